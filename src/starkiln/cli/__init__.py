@@ -1,0 +1,69 @@
+"""The command line: parses, calls and prints; no physics.
+
+Each command lives in a module of its own with two functions, `configure(parser)`
+and `run(args) -> int` (the exit code), and is named once, in `COMMANDS`; only the
+module of the command that was asked for is imported.
+"""
+
+from __future__ import annotations
+
+import argparse
+import sys
+from collections.abc import Sequence
+from importlib import import_module
+
+from starkiln._version import __version__
+from starkiln.errors import StarkilnError
+
+#: Command -> (module, what it does in one line).
+COMMANDS: dict[str, tuple[str, str]] = {}
+
+_DESCRIPTION = (
+    "Temperature, angular diameter, extinction, radius and luminosity of stars from their "
+    "photometry, with posteriors; and what their light presses on."
+)
+
+
+def main(argv: Sequence[str] | None = None) -> int:
+    """Run the command line and return its exit code.
+
+    0 complete, 1 failed, 2 bad command or file, 3 complete with rejected rows,
+    130 interrupted and resumable.
+    """
+    words = list(sys.argv[1:] if argv is None else argv)
+    parser = _parser(words)
+    args = parser.parse_args(words)
+    if args.command is None:
+        parser.print_help(sys.stderr)
+        return 2
+    try:
+        return int(args.run(args))
+    except StarkilnError as error:
+        sys.stderr.write(f"starkiln {args.command}: {error}\n")
+        return error.exit_code
+    except BrokenPipeError:
+        sys.stderr.close()
+        return 1
+    except KeyboardInterrupt:
+        sys.stderr.write(f"starkiln {args.command}: interrupted\n")
+        return 130
+
+
+def _parser(words: Sequence[str]) -> argparse.ArgumentParser:
+    parser = argparse.ArgumentParser(prog="starkiln", description=_DESCRIPTION, allow_abbrev=False)
+    parser.add_argument("--version", action="version", version=f"starkiln {__version__}")
+    commands = parser.add_subparsers(dest="command", metavar="COMMAND", title="commands")
+    chosen = next((word for word in words if not word.startswith("-")), None)
+    for name, (module_name, summary) in COMMANDS.items():
+        command = commands.add_parser(
+            name,
+            help=summary,
+            description=summary,
+            allow_abbrev=False,
+            formatter_class=argparse.RawDescriptionHelpFormatter,
+        )
+        if name == chosen:
+            module = import_module(module_name)
+            module.configure(command)
+            command.set_defaults(run=module.run)
+    return parser
