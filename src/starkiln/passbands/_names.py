@@ -1,0 +1,84 @@
+"""Names of bands: how one is recognised, and which are offered for a wrong one."""
+
+from __future__ import annotations
+
+import difflib
+import re
+from functools import lru_cache
+
+from starkiln.errors import BandError
+from starkiln.store import read_data_table
+
+__all__ = ["band_names", "canonical_name", "is_band", "match_band"]
+
+#: Other names of the trade, each of one band only. A bare letter (J, V, g) is none:
+#: several systems use it.
+_SYNONYMS = {
+    "Gaia G": ("Gaia DR3 G", "Gaia EDR3 G"),
+    "Gaia BP": ("G_BP", "Gaia G_BP", "Gaia DR3 BP", "Gaia EDR3 BP"),
+    "Gaia RP": ("G_RP", "Gaia G_RP", "Gaia DR3 RP", "Gaia EDR3 RP"),
+    "2MASS Ks": ("2MASS K", "2MASS K_s"),
+    "WISE W1": ("W1", "WISE 1", "AllWISE W1"),
+    "WISE W2": ("W2", "WISE 2", "AllWISE W2"),
+    "WISE W3": ("W3", "WISE 3", "AllWISE W3"),
+    "WISE W4": ("W4", "WISE 4", "AllWISE W4"),
+    "Johnson U": ("Bessell U",),
+    "Johnson B": ("Bessell B",),
+    "Johnson V": ("Bessell V",),
+    "Cousins R": ("Bessell R", "R_C", "Rc"),
+    "Cousins I": ("Bessell I", "I_C", "Ic"),
+}
+_SURVEY_SYNONYMS = {"Pan-STARRS ": ("PS1 ", "Pan-STARRS1 ", "PanSTARRS1 ")}
+
+
+@lru_cache(maxsize=1)
+def band_names() -> tuple[str, ...]:
+    """Return the names of all bands, the most important system first."""
+    return tuple(str(name) for name in read_data_table("passbands", "zero_points.ecsv")["band"])
+
+
+def match_band(text: str) -> str | None:
+    """Return the name of the band that `text` means, or None.
+
+    Case, space, dot, dash and underscore do not matter; a few synonyms of the
+    trade are known (`2MASS K`, `PS1 g`, `W1`).
+    """
+    return _index().get(_key(text))
+
+
+def is_band(text: str) -> bool:
+    """Whether `text` names a band; see `match_band`."""
+    return match_band(text) is not None
+
+
+def canonical_name(text: str) -> str:
+    """Return the name of the band that `text` means.
+
+    Raises
+    ------
+    BandError
+        None does; the nearest names are offered.
+    """
+    name = match_band(text)
+    if name is None:
+        near = difflib.get_close_matches(_key(text), list(_index()), n=5, cutoff=0.5)
+        offers = list(dict.fromkeys(_index()[key] for key in near))[:3]
+        remedy = f"did you mean {' or '.join(offers)}?" if offers else "see `starkiln bands`"
+        raise BandError(f"unknown band '{text}': {remedy}")
+    return name
+
+
+@lru_cache(maxsize=1)
+def _index() -> dict[str, str]:
+    index = {_key(name): name for name in band_names()}
+    for name, others in _SYNONYMS.items():
+        index.update({_key(other): name for other in others})
+    for survey, prefixes in _SURVEY_SYNONYMS.items():
+        for name in band_names():
+            if name.startswith(survey):
+                index.update({_key(p + name.removeprefix(survey)): name for p in prefixes})
+    return index
+
+
+def _key(text: str) -> str:
+    return re.sub(r"[\s.\-_]", "", text).lower()
