@@ -1,0 +1,164 @@
+"""Catalogue files of every format, opened as one kind of table."""
+
+from __future__ import annotations
+
+import gzip
+import hashlib
+import warnings
+from dataclasses import dataclass, field
+from pathlib import Path
+from typing import Any
+
+from starkiln.errors import CatalogueError
+from starkiln.observations._text import read_text_table
+
+__all__ = ["Source", "open_source"]
+
+_FORMATS = "ECSV, CSV, FITS, VOTable, CDS, IPAC or plain text columns"
+
+
+@dataclass
+class Source:
+    """An opened catalogue file.
+
+    Attributes
+    ----------
+    path : pathlib.Path
+    kind : str
+        The format that was found, from the content, whatever the file's name.
+    table : astropy.table.Table
+        Text columns hold strings where the format has no types.
+    checksum : str
+        SHA-256 of the file.
+    decimal_comma : bool
+        Whether `10,2` is a number.
+    remarks : list of str
+        What the reader had to decide.
+    """
+
+    path: Path
+    kind: str
+    table: Any
+    checksum: str
+    decimal_comma: bool = False
+    remarks: list[str] = field(default_factory=list)
+
+    def __len__(self) -> int:
+        return len(self.table)
+
+    @property
+    def headings(self) -> list[str]:
+        """Headings in the order of the file."""
+        return list(self.table.colnames)
+
+    def unit(self, heading: str) -> str:
+        """Text of a column's unit; empty for none."""
+        unit = getattr(self.table[heading], "unit", None)
+        return "" if unit is None else str(unit)
+
+    def cells(self, heading: str, start: int, stop: int) -> Any:
+        """Return some cells of one column, as stored."""
+        return self.table[heading][start:stop]
+
+
+def open_source(path: str | Path) -> Source:
+    """Open a catalogue.
+
+    Parameters
+    ----------
+    path : str or pathlib.Path
+
+    Returns
+    -------
+    Source
+
+    Raises
+    ------
+    CatalogueError
+        Absent, a folder, empty, unreadable, ragged, or no table.
+    """
+    path = Path(path)
+    raw = _read_bytes(path)
+    checksum = hashlib.sha256(raw).hexdigest()
+    if raw[:2] == b"\x1f\x8b":
+        try:
+            raw = gzip.decompress(raw)
+        except (OSError, EOFError) as error:
+            raise CatalogueError(f"{path}: the gzip file is damaged: {error}") from error
+    head = raw[:4096].lstrip(b"\xef\xbb\xbf \t\r\n")
+    if not raw.strip():
+        raise CatalogueError(f"{path}: the file is empty; give a catalogue with one row per star")
+    if head.startswith(b"SIMPLE  ="):
+        source = Source(path, "FITS", _fits(path), checksum)
+    elif b"<VOTABLE" in raw[:4096]:
+        source = Source(path, "VOTable", _votable(path, raw), checksum)
+    else:
+        _refuse_binary(path, raw)
+        found = read_text_table(path, raw)
+        source = Source(path, found.kind, found.table, checksum, found.decimal_comma, found.remarks)
+    if len(source) == 0:
+        raise CatalogueError(f"{path}: the table has headings but no rows")
+    return source
+
+
+def _read_bytes(path: Path) -> bytes:
+    if path.is_dir():
+        raise CatalogueError(f"{path} is a folder; give the catalogue file itself")
+    try:
+        return path.read_bytes()
+    except FileNotFoundError as error:
+        raise CatalogueError(f"{path}: there is no such file") from error
+    except OSError as error:
+        raise CatalogueError(f"{path} cannot be read: {error.strerror or error}") from error
+
+
+def _refuse_binary(path: Path, raw: bytes) -> None:
+    if raw[:4] == b"PAR1":
+        raise CatalogueError(f"{path} is a Parquet file, not read yet; write it as FITS or ECSV")
+    utf16 = raw[:2] in (b"\xff\xfe", b"\xfe\xff")
+    if b"\x00" in raw[:65536] and not utf16:
+        raise CatalogueError(f"{path} is not a table that can be read; give {_FORMATS}")
+
+
+def _fits(path: Path) -> Any:
+    from astropy.io import fits
+    from astropy.table import Table
+
+    try:
+        with warnings.catch_warnings():
+            warnings.simplefilter("ignore")
+            with fits.open(path) as hdus:
+                tables = [
+                    i
+                    for i, hdu in enumerate(hdus)
+                    if isinstance(hdu, fits.BinTableHDU | fits.TableHDU)
+                ]
+                if not tables:
+                    raise CatalogueError(f"{path}: the FITS file holds no table, only images")
+                table = Table.read(hdus, hdu=tables[0], format="fits")
+                table.convert_bytestring_to_unicode()
+    except (OSError, ValueError, TypeError, KeyError) as error:
+        if isinstance(error, CatalogueError):
+            raise
+        raise CatalogueError(
+            f"{path}: the FITS table cannot be read: {_first_line(error)}"
+        ) from error
+    return table
+
+
+def _votable(path: Path, raw: bytes) -> Any:
+    import io
+
+    from astropy.io.votable import parse
+
+    try:
+        with warnings.catch_warnings():
+            warnings.simplefilter("ignore")
+            first = parse(io.BytesIO(raw)).get_first_table()
+            return first.to_table(use_names_over_ids=True)
+    except Exception as error:  # the parser raises what its XML library raises
+        raise CatalogueError(f"{path}: the VOTable cannot be read: {_first_line(error)}") from error
+
+
+def _first_line(error: BaseException) -> str:
+    return (str(error).strip() or type(error).__name__).splitlines()[0]
