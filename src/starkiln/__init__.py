@@ -15,8 +15,8 @@ from starkiln._version import __version__
 _PUBLIC = {
     "Star": "starkiln.observations",
     "read_catalogue": "starkiln.observations",
-    "fit": "starkiln.inference",
-    "FitResult": "starkiln.inference",
+    "fit": "starkiln.runner",
+    "FitResult": "starkiln.runner",
     "fit_catalogue": "starkiln.runner",
     "BlackbodyEmitter": "starkiln.emitters",
     "Dust": "starkiln.dust",

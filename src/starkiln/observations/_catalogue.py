@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from hashlib import sha256
 from pathlib import Path
 from typing import Any
 
@@ -45,6 +46,15 @@ class Catalogue:
     def format(self) -> str:
         """The file's format, as found from its content."""
         return self._source.kind
+
+    @property
+    def sheet_checksum(self) -> str:
+        """SHA-256 of what the column sheet says."""
+        return sha256(repr(self._sheet).encode()).hexdigest()
+
+    def has(self, meaning: str) -> bool:
+        """Whether a column of that meaning, such as `parallax`, is in use."""
+        return any(column.used and column.meaning == meaning for column in self.columns)
 
     @property
     def bands(self) -> tuple[str, ...]:

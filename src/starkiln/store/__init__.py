@@ -8,6 +8,7 @@ the same bytes for the same table.
 
 from starkiln.store._atomic import atomic_write
 from starkiln.store._data import data_path, read_data_table
+from starkiln.store._read import read_table, table_name
 from starkiln.store._tables import FORMATS, table_bytes, write_table
 
 __all__ = [
@@ -15,6 +16,8 @@ __all__ = [
     "atomic_write",
     "data_path",
     "read_data_table",
+    "read_table",
     "table_bytes",
+    "table_name",
     "write_table",
 ]

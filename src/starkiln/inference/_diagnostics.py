@@ -1,0 +1,151 @@
+"""Whether a posterior may be believed: predictive check and flags.
+
+The thresholds are choices of this project, stated here and in the README.
+"""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+
+from starkiln.inference._problem import AV_MAX, Problem
+from starkiln.inference._samples import Samples
+
+#: `poor_blackbody` below this predictive probability.
+POOR_FIT = 0.01
+#: `prior_dominated` when a posterior is wider than this share of its prior.
+PRIOR_SHARE = 0.7
+#: `degenerate` when temperature and A_V are correlated beyond this.
+CORRELATION = 0.9
+#: `at_edge` when the outermost `EDGE_WIDTH` of a range holds more than `EDGE_SHARE`.
+EDGE_WIDTH, EDGE_SHARE = 0.01, 0.02
+#: `few_bands` below this number of usable bands.
+FEW = 3
+
+
+def fit_probability(problem: Problem, samples: Samples) -> float:
+    """Return the posterior predictive probability of chi^2 without the misfit.
+
+    The emitter is fitted again with the quoted errors and the zero-point errors
+    alone (misfit zero); the probability is that of a replicated chi^2 above the
+    observed one, averaged over that posterior, in which chi^2 exceeds its smallest
+    value by a chi^2 variate with as many degrees of freedom as parameters (Rubin
+    1984, Ann. Stat. 12, 1151; Gelman, Meng & Stern 1996, Stat. Sin. 6, 733).
+
+    Parameters
+    ----------
+    problem : Problem
+    samples : Samples
+
+    Returns
+    -------
+    float
+        Between 0 and 1; small where the star is not what the emitter says. Limits
+        take no part.
+    """
+    from scipy.stats import chi2
+
+    whiten = _whitener(problem)
+    columns = [i for i, name in enumerate(problem.names) if name != "ln_misfit"]
+    smallest = _smallest_chi2(problem, samples, whiten, columns)
+    n = problem.bands.n_detections
+    spread = chi2.ppf((np.arange(64) + 0.5) / 64.0, min(len(columns), n))
+    return float(np.mean(chi2.sf(smallest + spread, n)))
+
+
+def find_flags(problem: Problem, samples: Samples, probability: float) -> list[str]:
+    """Return the flags of the contract that a posterior of the emitter earns.
+
+    Parameters
+    ----------
+    problem : Problem
+    samples : Samples
+    probability : float
+        From `fit_probability`.
+
+    Returns
+    -------
+    list of str
+    """
+    flags = []
+    if probability < POOR_FIT:
+        flags.append("poor_blackbody")
+    if any(_wide(problem, samples, name) for name in ("ln_temperature", "av")):
+        flags.append("prior_dominated")
+    if any(_at_edge(problem, samples, name) for name in problem.names):
+        flags.append("at_edge")
+    if "av" in problem.names and problem.dust.prior == "free":
+        pair = [problem.column(samples.x, name) for name in ("ln_temperature", "av")]
+        if np.corrcoef(*pair)[0, 1] > CORRELATION:
+            flags.append("degenerate")
+    if len(problem.bands.names) < FEW:
+        flags.append("few_bands")
+    if problem.dust.prior == "column" and problem.star.av is None:
+        flags.append("dust_assumed_zero")
+    if problem.star.saturated_bands:
+        flags.append("saturated")
+    return flags
+
+
+def _whitener(problem: Problem) -> Any:
+    """Return a function that turns ln model fluxes into residuals of unit variance."""
+    bands, n = problem.bands, problem.bands.n_detections
+    shared = (bands.member * bands.offset_variance) @ bands.member.T
+    if problem.form == "log":
+        factor = np.linalg.cholesky(np.diag(bands.variance) + shared)
+        return lambda ln_model: np.linalg.solve(factor, bands.ln_data - ln_model)
+    scaled = bands.scaled_data[:n]
+    factor = np.linalg.cholesky(np.eye(n) + shared * np.outer(scaled, scaled))
+
+    def residual(ln_model: np.ndarray) -> np.ndarray:
+        model = np.exp(np.minimum(ln_model[:n] - bands.ln_error[:n], 300.0))
+        return np.linalg.solve(factor, scaled - model)
+
+    return residual
+
+
+def _smallest_chi2(problem: Problem, samples: Samples, whiten: Any, columns: list[int]) -> float:
+    from scipy.optimize import least_squares
+
+    thinned = samples.x[:: max(1, len(samples.x) // 256)]
+    chi2 = [float(np.sum(whiten(row) ** 2)) for row in problem.ln_model(thinned)]
+    best = thinned[int(np.argmin(chi2))]
+    low, high = problem.bounds[columns].T
+
+    def residual(values: np.ndarray) -> np.ndarray:
+        x = best.copy()
+        x[columns] = values
+        return np.concatenate([whiten(problem.ln_model(x[None])[0]), _dust_pull(problem, x)])
+
+    start = np.clip(best[columns], low + 1e-9, high - 1e-9)
+    solution = least_squares(residual, start, bounds=(low, high), x_scale=0.1, xtol=1e-10)
+    n = problem.bands.n_detections
+    return float(np.sum(solution.fun[:n] ** 2))
+
+
+def _dust_pull(problem: Problem, x: np.ndarray) -> np.ndarray:
+    """Return the pull of a Gaussian prior on A_V as one more residual."""
+    if "av" not in problem.names:
+        return np.empty(0)
+    prior = problem.parameters[problem.names.index("av")].prior
+    value = x[problem.names.index("av")]
+    return np.array([(value - getattr(prior, "mean", value)) / getattr(prior, "width", AV_MAX)])
+
+
+def _wide(problem: Problem, samples: Samples, name: str) -> bool:
+    if name not in problem.names or (name == "av" and problem.dust.prior != "free"):
+        return False
+    prior = problem.parameters[problem.names.index(name)].prior
+    return bool(np.std(problem.column(samples.x, name)) > PRIOR_SHARE * prior.sd)
+
+
+def _at_edge(problem: Problem, samples: Samples, name: str) -> bool:
+    low, high = problem.bounds[problem.names.index(name)]
+    if name == "av" or name == "ln_misfit":
+        # A_V = 0 and the smallest misfit are natural ends; only the upper one is a limit.
+        low = -np.inf
+    x = problem.column(samples.x, name)
+    span = EDGE_WIDTH * (high - (low if np.isfinite(low) else problem.bounds[
+        problem.names.index(name)][0]))
+    return bool(np.mean((x < low + span) | (x > high - span)) > EDGE_SHARE)

@@ -1,0 +1,339 @@
+"""The posterior of one star: its data, its parameters with their priors, its density."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass, replace
+from functools import cached_property
+from typing import Any
+
+import numpy as np
+
+from starkiln.constants import MAS_RAD
+from starkiln.errors import InputError
+from starkiln.forward import band_fluxes
+from starkiln.inference import _kernels
+from starkiln.inference._priors import Prior, TruncatedNormal, Uniform
+from starkiln.inference._settings import Settings
+from starkiln.observations import Measurement, Star
+from starkiln.passbands import load_band
+
+#: mag to ln flux.
+MAG = 0.4 * math.log(10.0)
+#: Largest A_V that the tables of band fluxes hold, in mag.
+AV_MAX = 10.0
+#: ln of pi/4 theta^2 for theta of one milliarcsecond.
+_LN_SOLID_ANGLE = math.log(math.pi / 4.0) + 2.0 * math.log(MAS_RAD.value)
+
+
+@dataclass(frozen=True)
+class Parameter:
+    """One dimension that an engine explores.
+
+    Attributes
+    ----------
+    name : str
+        `ln_temperature` (K), `ln_diameter` (mas), `av` (mag), `ln_misfit`, or a
+        further parameter of the emitter by its own name.
+    prior : Prior
+    """
+
+    name: str
+    prior: Prior
+
+
+@dataclass(frozen=True)
+class Bands:
+    """What the likelihood needs of the bands, detections before limits.
+
+    Attributes
+    ----------
+    names : tuple of str
+    n_detections : int
+    ln_data, variance : numpy.ndarray
+        Log form: ln flux and squared relative error of the detections.
+    scaled_data, ln_error : numpy.ndarray
+        Flux form: flux over error and ln of the error, of every band.
+    sign : numpy.ndarray
+        Of the limits: +1 upper, -1 lower, in flux.
+    member, offset_variance : numpy.ndarray
+        Detections by system, and each system's variance in ln flux.
+    limit_offset_variance : numpy.ndarray
+        The same for each limit.
+    """
+
+    names: tuple[str, ...]
+    n_detections: int
+    ln_data: np.ndarray
+    variance: np.ndarray
+    scaled_data: np.ndarray
+    ln_error: np.ndarray
+    sign: np.ndarray
+    member: np.ndarray
+    offset_variance: np.ndarray
+    limit_offset_variance: np.ndarray
+
+
+@dataclass(frozen=True)
+class Problem:
+    """One star's posterior, ready to be explored.
+
+    Attributes
+    ----------
+    parameters : tuple of Parameter
+        In the order of the columns of `x`.
+    form : {"log", "flux"}
+        The likelihood in use.
+    fixed_av : float or None
+        A_V where it is not a parameter.
+    notes : tuple of str
+        What the observer must be told: assumed dust, changed likelihood.
+    """
+
+    star: Star
+    emitter: Any
+    dust: Any
+    settings: Settings
+    bands: Bands
+    parameters: tuple[Parameter, ...]
+    form: str
+    fixed_av: float | None
+    notes: tuple[str, ...]
+
+    @cached_property
+    def table(self) -> Any:
+        """The tabulated band fluxes of this star's emitter, bands and dust."""
+        return band_fluxes(self.emitter, self.bands.names, self.dust)
+
+    @cached_property
+    def names(self) -> tuple[str, ...]:
+        """The parameters' names."""
+        return tuple(item.name for item in self.parameters)
+
+    @cached_property
+    def bounds(self) -> np.ndarray:
+        """Lower and upper bounds, shape (n_parameters, 2)."""
+        return np.array([(item.prior.lower, item.prior.upper) for item in self.parameters])
+
+    def column(self, x: np.ndarray, name: str) -> np.ndarray:
+        """Return the column of `x`, shape (n, n_parameters), that holds `name`."""
+        return x[:, self.names.index(name)]
+
+    def draw_prior(self, rng: np.random.Generator, n: int) -> np.ndarray:
+        """Return `n` draws from the prior, shape (n, n_parameters)."""
+        return np.column_stack([item.prior.draw(rng, n) for item in self.parameters])
+
+    def ln_prior(self, x: np.ndarray) -> np.ndarray:
+        """Return ln of the prior density at `x`, shape (n, n_parameters) -> (n,)."""
+        return np.sum(
+            [item.prior.ln_density(x[:, i]) for i, item in enumerate(self.parameters)], axis=0
+        )
+
+    def ln_model(self, x: np.ndarray) -> np.ndarray:
+        """Return ln of the band fluxes in W m-3 at `x`, shape (n, n_bands)."""
+        shape = len(self.emitter.parameters)
+        ln_flux = self.table.ln_flux(x[:, :shape], self.av(x))
+        ln_flux += (_LN_SOLID_ANGLE + 2.0 * self.column(x, "ln_diameter"))[:, None]
+        return ln_flux
+
+    def av(self, x: np.ndarray) -> np.ndarray:
+        """Return A_V in mag at `x`, shape (n,)."""
+        if self.fixed_av is None:
+            return self.column(x, "av")
+        return np.full(len(x), self.fixed_av)
+
+    def misfit(self, x: np.ndarray) -> np.ndarray:
+        """Return the misfit f at `x`, shape (n,); 0 where it is left out."""
+        if "ln_misfit" in self.names:
+            return np.exp(self.column(x, "ln_misfit"))
+        return np.zeros(len(x))
+
+    def ln_likelihood(self, x: np.ndarray) -> np.ndarray:
+        """Return ln of the likelihood at `x` inside the bounds, shape (n,)."""
+        bands, n = self.bands, self.bands.n_detections
+        ln_model, misfit = self.ln_model(x), self.misfit(x)
+        if self.form == "log":
+            return _kernels.ln_likelihood_log(
+                ln_model, misfit, bands.ln_data, bands.variance, bands.member, bands.offset_variance
+            )
+        total = _kernels.ln_likelihood_flux(
+            ln_model[:, :n],
+            misfit,
+            bands.scaled_data[:n],
+            bands.ln_error[:n],
+            bands.member,
+            bands.offset_variance,
+        )
+        if bands.sign.size:
+            total += _kernels.ln_likelihood_limits(
+                ln_model[:, n:],
+                misfit,
+                bands.scaled_data[n:],
+                bands.ln_error[n:],
+                bands.sign,
+                bands.limit_offset_variance,
+            )
+        return total
+
+    def ln_posterior(self, x: np.ndarray) -> np.ndarray:
+        """Return ln of prior times likelihood, -inf outside the bounds, shape (n,).
+
+        Every call evaluates all rows of `x`, so that its cost and rounding depend
+        on the number of rows alone.
+        """
+        prior = self.ln_prior(x)
+        inside = np.clip(x, self.bounds[:, 0], self.bounds[:, 1])
+        return np.where(np.isfinite(prior), prior + self.ln_likelihood(inside), -np.inf)
+
+
+def build_problem(star: Star, emitter: Any, dust: Any, settings: Settings) -> Problem:
+    """Return the posterior of `star`.
+
+    Parameters
+    ----------
+    star : Star
+    emitter, dust
+        A registered emitter and a `starkiln.dust.Dust`.
+    settings : Settings
+
+    Returns
+    -------
+    Problem
+
+    Raises
+    ------
+    InputError
+        No usable band, or a value that the prior excludes.
+    """
+    detections = [item for item in star.measurements if not item.limit]
+    limits = [item for item in star.measurements if item.limit]
+    if not detections:
+        raise InputError(
+            "no usable band: at least one measured magnitude or flux density is needed"
+        )
+    notes: list[str] = []
+    form = _choose_form(detections, limits, settings, notes)
+    fixed_av, av_prior = _dust_of(star, dust, notes)
+    parameters = _emitter_parameters(star, emitter, settings, notes)
+    low, high = settings.diameter_range
+    parameters.append(Parameter("ln_diameter", Uniform(math.log(low), math.log(high))))
+    if av_prior is not None:
+        parameters.append(Parameter("av", av_prior))
+    if settings.misfit:
+        low, high = settings.misfit_range
+        parameters.append(Parameter("ln_misfit", Uniform(math.log(low), math.log(high))))
+    return Problem(
+        star=star,
+        emitter=emitter,
+        dust=dust if star.rv is None else replace(dust, rv=star.rv),
+        settings=settings,
+        bands=_bands(detections, limits, settings),
+        parameters=tuple(parameters),
+        form=form,
+        fixed_av=fixed_av,
+        notes=tuple(notes),
+    )
+
+
+def _choose_form(
+    detections: list[Measurement],
+    limits: list[Measurement],
+    settings: Settings,
+    notes: list[str],
+) -> str:
+    if settings.likelihood == "flux":
+        return "flux"
+    faint = [item.band for item in detections if item.flux_w_m3 <= 0.0]
+    if not limits and not faint:
+        return "log"
+    why = [f"limit in {item.band}" for item in limits] + [f"flux <= 0 in {b}" for b in faint]
+    notes.append(f"likelihood in flux ({', '.join(why)})")
+    return "flux"
+
+
+def _dust_of(star: Star, dust: Any, notes: list[str]) -> tuple[float | None, Prior | None]:
+    """Return the fixed A_V or its prior."""
+    if dust.prior == "zero":
+        return 0.0, None
+    if dust.prior == "free":
+        return None, TruncatedNormal(0.0, dust.width, 0.0, AV_MAX)
+    if star.av is None:
+        notes.append("no av given: A_V = 0 assumed")
+        return 0.0, None
+    if star.av > AV_MAX:
+        raise InputError(f"av = {star.av:g} mag is above {AV_MAX:g} mag, the most that is tabulated")
+    if not star.e_av:
+        if star.av < 0.0:
+            notes.append(f"av = {star.av:g} mag taken as 0")
+        return max(star.av, 0.0), None
+    prior = TruncatedNormal(star.av, star.e_av, 0.0, AV_MAX)
+    if prior.mean < -6.0 * prior.width:
+        raise InputError(
+            f"av = {star.av:g} +- {star.e_av:g} mag is negative by more than 6 sigma; "
+            "correct it or use --dust zero"
+        )
+    return None, prior
+
+
+def _emitter_parameters(
+    star: Star, emitter: Any, settings: Settings, notes: list[str]
+) -> list[Parameter]:
+    low, high = settings.temperature_range
+    prior: Prior = Uniform(math.log(low), math.log(high))
+    if settings.use_published_temperature and star.teff_k is not None:
+        if not star.e_teff_k:
+            raise InputError(
+                "teff without e_teff cannot serve as prior; give its error or set "
+                "priors.published_temperature = false"
+            )
+        if not low <= star.teff_k <= high:
+            raise InputError(
+                f"teff = {star.teff_k:g} K lies outside the temperature prior, "
+                f"{low:g} to {high:g} K; widen priors.temperature"
+            )
+        notes.append(f"temperature prior {star.teff_k:g} +- {star.e_teff_k:g} K (teff)")
+        width = star.e_teff_k / star.teff_k
+        prior = TruncatedNormal(math.log(star.teff_k), width, math.log(low), math.log(high))
+    return [Parameter("ln_temperature", prior)]
+
+
+def _bands(
+    detections: list[Measurement], limits: list[Measurement], settings: Settings
+) -> Bands:
+    used = detections + limits
+    bands = [load_band(item.band) for item in used]
+    own = np.array([band.zero_point_error_mag * MAG for band in bands])
+    own *= settings.system_offsets
+    flux = np.array([item.flux_w_m3 for item in used])
+    relative = np.array([item.fractional_error for item in detections])
+    # A band's own zero-point error is independent of the others', so it adds to the
+    # quoted error; the part that a system shares enters as its offset.
+    error = np.array([item.error_w_m3 for item in used])
+    error = np.hypot(error, own * np.abs(flux))
+    n = len(detections)
+    systems = list(dict.fromkeys(band.system for band in bands))
+    offset = np.array([_offset(bands, system, settings) for system in systems]) ** 2
+    member = np.array([[float(band.system == s) for s in systems] for band in bands])
+    with np.errstate(invalid="ignore", divide="ignore"):
+        ln_data = np.log(flux[:n])
+    return Bands(
+        names=tuple(band.name for band in bands),
+        n_detections=n,
+        ln_data=ln_data,
+        variance=relative**2 + own[:n] ** 2,
+        scaled_data=flux / error,
+        ln_error=np.log(error),
+        sign=np.array([1.0 if item.limit == "upper" else -1.0 for item in limits]),
+        member=member[:n],
+        offset_variance=offset,
+        limit_offset_variance=member[n:] @ offset,
+    )
+
+
+def _offset(bands: list[Any], system: str, settings: Settings) -> float:
+    """Return the error of a system's common zero point in ln flux."""
+    if not settings.system_offsets:
+        return 0.0
+    if system in settings.system_offset_errors:
+        return settings.system_offset_errors[system] * MAG
+    return next(band.offset_error_mag for band in bands if band.system == system) * MAG

@@ -1,0 +1,94 @@
+"""The reference engine: emcee's ensemble sampler with a located start and a stopping rule.
+
+Moves: 0.6 differential evolution, 0.4 kernel density (Foreman-Mackey et al. 2013,
+PASP 125, 306). The snooker move is left out on purpose: it is biased in the emcee
+releases this was built on.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from starkiln.inference._problem import Problem
+from starkiln.inference._samples import Samples
+from starkiln.inference.engines._tempered import tempered_start
+
+#: Autocorrelation times that are thrown away before the kept chain.
+BURN_IN_LENGTHS = 5
+_BLOCK = 100
+
+
+def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
+    """Explore the posterior with emcee until the stopping rule is met.
+
+    The rule: after a burn-in of `BURN_IN_LENGTHS` autocorrelation times, the kept
+    chain is at least `settings.autocorrelation_lengths` autocorrelation times long
+    in every parameter, and holds at least `settings.effective_draws` effective
+    draws (steps times walkers over the autocorrelation time; Goodman & Weare 2010,
+    Comm. App. Math. Comp. Sci. 5, 65). A chain that reaches `settings.max_steps`
+    first is returned as unconverged.
+
+    Parameters
+    ----------
+    problem : Problem
+    rng : numpy.random.Generator
+
+    Returns
+    -------
+    Samples
+    """
+    import emcee
+
+    settings = problem.settings
+    population, _ = tempered_start(problem, rng)
+    start = population[rng.choice(len(population), settings.walkers, replace=settings.walkers > len(population))]
+    moves = [(emcee.moves.DEMove(), 0.6), (emcee.moves.KDEMove(), 0.4)]
+    sampler = emcee.EnsembleSampler(
+        settings.walkers, start.shape[1], problem.ln_posterior, vectorize=True, moves=moves
+    )
+    state = emcee.State(start, random_state=_random_state(rng))
+    while True:
+        state = sampler.run_mcmc(state, _BLOCK, skip_initial_state_check=True)
+        chain = sampler.get_chain()
+        burn, tau = _split(chain)
+        kept = len(chain) - burn
+        n_eff = kept * settings.walkers / tau.max()
+        converged = bool(
+            kept >= settings.autocorrelation_lengths * tau.max()
+            and n_eff >= settings.effective_draws
+        )
+        if converged or len(chain) >= settings.max_steps:
+            break
+    message = "" if converged else _shortfall(len(chain), kept, tau.max(), n_eff, problem)
+    return Samples(
+        x=chain[burn:].reshape(-1, chain.shape[2]),
+        n_eff=float(n_eff),
+        converged=converged,
+        message=message,
+        ln_evidence=np.nan,
+        chain=chain,
+        burn_in=burn,
+        autocorrelation=tau,
+    )
+
+
+def _split(chain: np.ndarray) -> tuple[int, np.ndarray]:
+    """Return the burn-in and the autocorrelation time of each parameter after it."""
+    from emcee.autocorr import integrated_time
+
+    tau = integrated_time(chain, tol=0)
+    burn = min(int(BURN_IN_LENGTHS * np.nanmax(tau)) + 1, len(chain) // 2)
+    return burn, integrated_time(chain[burn:], tol=0)
+
+
+def _random_state(rng: np.random.Generator) -> tuple:
+    words = rng.integers(0, 2**32, size=8, dtype=np.uint64)
+    return np.random.RandomState(np.random.MT19937(np.random.SeedSequence(words))).get_state()
+
+
+def _shortfall(steps: int, kept: int, tau: float, n_eff: float, problem: Problem) -> str:
+    return (
+        f"after {steps} steps the chain is {kept / tau:.0f} autocorrelation times long and holds "
+        f"{n_eff:.0f} effective draws ({problem.settings.autocorrelation_lengths} and "
+        f"{problem.settings.effective_draws} wanted); raise sampling.max_steps"
+    )
