@@ -25,7 +25,7 @@ _PUBLIC = {
     "luminosity": "starkiln.derived",
 }
 
-__all__ = [  # noqa: PLE0604, F822
+__all__ = [
     "Band",
     "BlackbodyEmitter",
     "Dust",

@@ -2,8 +2,9 @@
 
 The nominal solar values of IAU 2015 Resolution B3 are exact conversion
 constants, not measurements; so are the zero points of IAU 2015 Resolution B2.
-CODATA values are those of the 2022 adjustment (the exact ones are those of 2018). Inside the package use `NAME.value`, a float in SI units; hand
-`NAME.quantity` to an observer.
+CODATA values are those of the 2022 adjustment (the exact ones are those of 2018).
+Inside the package use `NAME.value`, a float in SI units; hand `NAME.quantity` to an
+observer.
 """
 
 from __future__ import annotations
@@ -96,9 +97,7 @@ M_SUN = Constant(
 )
 
 #: One milliarcsecond in radians.
-MAS_RAD = Constant(
-    "milliarcsecond", 4.848136811095360e-09, "rad", 0.0, "pi / (180 * 3600 * 1000)"
-)
+MAS_RAD = Constant("milliarcsecond", 4.848136811095360e-09, "rad", 0.0, "pi / (180 * 3600 * 1000)")
 
 
 def all_constants() -> dict[str, Constant]:

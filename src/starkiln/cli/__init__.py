@@ -16,7 +16,10 @@ from starkiln._version import __version__
 from starkiln.errors import StarkilnError
 
 #: Command -> (module, what it does in one line).
-COMMANDS: dict[str, tuple[str, str]] = {}
+COMMANDS: dict[str, tuple[str, str]] = {
+    "fit": ("starkiln.cli.fit", "fit a catalogue: temperatures, diameters, radii, luminosities"),
+    "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
+}
 
 _DESCRIPTION = (
     "Temperature, angular diameter, extinction, radius and luminosity of stars from their "

@@ -5,6 +5,7 @@ from starkiln.derived._luminosity import (
     bolometric_magnitude,
     luminosity,
     luminosity_row,
+    luminosity_table,
 )
 from starkiln.derived._quantities import (
     QUANTITIES,
@@ -23,5 +24,6 @@ __all__ = [
     "intervals",
     "luminosity",
     "luminosity_row",
+    "luminosity_table",
     "quantities_of",
 ]

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping, Sequence
 from typing import Any
 
 import numpy as np
@@ -108,6 +109,61 @@ def luminosity_row(
     if e_radius or e_temperature:
         row.update(_intervals(values))
     return row
+
+
+#: Columns of the table, with unit and description.
+_COLUMNS = {
+    "radius": ("solRad", "radius, nominal solar radii (IAU 2015 B3)"),
+    "temperature": ("K", "effective temperature"),
+    "luminosity": ("solLum", "4 pi R^2 sigma T^4, nominal solar luminosities (IAU 2015 B3)"),
+    "mbol": ("mag", "absolute bolometric magnitude (IAU 2015 B2)"),
+}
+
+
+def luminosity_table(columns: Mapping[str, Sequence[Any]]) -> Any:
+    """Return luminosities of many stars as a table.
+
+    Parameters
+    ----------
+    columns : mapping
+        `radius` (solRad) and `temperature` (K), and, as far as they are known,
+        `name`, `e_radius` and `e_temperature`; equal lengths, NaN for missing.
+
+    Returns
+    -------
+    astropy.table.Table
+        `radius`, `temperature`, `luminosity`, `mbol`, with `_lo` and `_hi` where
+        errors are given. A row that cannot be used is masked, and a column
+        `message` says why.
+    """
+    from astropy.table import MaskedColumn, Table
+
+    with_errors = any(f"e_{name}" in columns for name in ("radius", "temperature"))
+    rows, messages = [], []
+    for i in range(len(columns["radius"])):
+        values = {
+            key: 0.0 if key.startswith("e_") and np.isnan(columns[key][i]) else columns[key][i]
+            for key in ("radius", "temperature", "e_radius", "e_temperature")
+            if key in columns
+        }
+        try:
+            rows.append(luminosity_row(**values))
+            messages.append("")
+        except InputError as error:
+            rows.append({})
+            messages.append(str(error))
+    table = Table()
+    if "name" in columns:
+        table["name"] = np.array(columns["name"], dtype=str)
+    edges = {"": "", "_lo": "16th percentile of ", "_hi": "84th percentile of "}
+    for name, (unit, text) in _COLUMNS.items():
+        for edge, words in edges.items() if with_errors else [("", "")]:
+            numbers = [row.get(name + edge, row.get(name, np.nan)) for row in rows]
+            table[name + edge] = MaskedColumn(numbers, mask=np.isnan(numbers), unit=unit)
+            table[name + edge].description = words + text
+    if any(messages):
+        table["message"] = np.array(messages)
+    return table
 
 
 def _intervals(values: dict[str, tuple[float, float]]) -> dict[str, float]:

@@ -36,9 +36,7 @@ QUANTITIES: dict[str, Quantity] = {
     "angular_diameter": Quantity("mas", "angular diameter", "phys.angSize"),
     "av": Quantity("mag", "extinction at 0.55 um", "phys.absorption;em.opt.V"),
     "misfit": Quantity("", "fractional departure from the emitter, per band", "stat.stdev"),
-    "bolometric_flux": Quantity(
-        "W / m2", "sigma T^4 theta^2 / 4, before dust", "phot.flux.bol"
-    ),
+    "bolometric_flux": Quantity("W / m2", "sigma T^4 theta^2 / 4, before dust", "phot.flux.bol"),
     "distance": Quantity("pc", "distance", "pos.distance"),
     "radius": Quantity("solRad", "radius, nominal solar radii (IAU 2015 B3)", "phys.size.radius"),
     "luminosity": Quantity(
@@ -96,9 +94,7 @@ def quantities_of(
         distance_m = distance_pc * PARSEC.value
         draws["distance"] = distance_pc
         draws["radius"] = 0.5 * diameter * MAS_RAD.value * distance_m / R_SUN.value
-        draws["luminosity"] = (
-            4.0 * np.pi * distance_m**2 * draws["bolometric_flux"] / L_SUN.value
-        )
+        draws["luminosity"] = 4.0 * np.pi * distance_m**2 * draws["bolometric_flux"] / L_SUN.value
     for name in problem.names:
         if name in QUANTITIES and name not in draws:
             draws[name] = problem.column(x, name)

@@ -1,7 +1,7 @@
 """One star's posterior: settings, priors, likelihood, engines, diagnostics."""
 
-from starkiln.inference._diagnostics import find_flags, fit_probability
 from starkiln.inference._describe import describe_priors
+from starkiln.inference._diagnostics import find_flags, fit_probability
 from starkiln.inference._distance import (
     DistancePosterior,
     from_distance,

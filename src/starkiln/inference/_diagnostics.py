@@ -76,8 +76,8 @@ def find_flags(problem: Problem, samples: Samples, probability: float) -> list[s
     if any(_at_edge(problem, samples, name) for name in problem.names):
         flags.append("at_edge")
     if "av" in problem.names and problem.dust.prior == "free":
-        pair = [problem.column(samples.x, name) for name in ("ln_temperature", "av")]
-        if np.corrcoef(*pair)[0, 1] > CORRELATION:
+        temperature = problem.column(samples.x, "ln_temperature")
+        if np.corrcoef(temperature, problem.column(samples.x, "av"))[0, 1] > CORRELATION:
             flags.append("degenerate")
     if len(problem.bands.names) < FEW:
         flags.append("few_bands")
@@ -146,6 +146,7 @@ def _at_edge(problem: Problem, samples: Samples, name: str) -> bool:
         # A_V = 0 and the smallest misfit are natural ends; only the upper one is a limit.
         low = -np.inf
     x = problem.column(samples.x, name)
-    span = EDGE_WIDTH * (high - (low if np.isfinite(low) else problem.bounds[
-        problem.names.index(name)][0]))
+    span = EDGE_WIDTH * (
+        high - (low if np.isfinite(low) else problem.bounds[problem.names.index(name)][0])
+    )
     return bool(np.mean((x < low + span) | (x > high - span)) > EDGE_SHARE)

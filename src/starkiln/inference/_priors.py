@@ -12,8 +12,13 @@ import numpy as np
 class Prior(Protocol):
     """What the posterior, the engines and the figures need of a prior."""
 
-    lower: float
-    upper: float
+    @property
+    def lower(self) -> float:
+        """The lower bound."""
+
+    @property
+    def upper(self) -> float:
+        """The upper bound."""
 
     def ln_density(self, x: np.ndarray) -> np.ndarray:
         """Return ln of the density, -inf outside the bounds; shape of `x`."""

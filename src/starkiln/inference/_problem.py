@@ -261,7 +261,9 @@ def _dust_of(star: Star, dust: Any, notes: list[str]) -> tuple[float | None, Pri
         notes.append("no av given: A_V = 0 assumed")
         return 0.0, None
     if star.av > AV_MAX:
-        raise InputError(f"av = {star.av:g} mag is above {AV_MAX:g} mag, the most that is tabulated")
+        raise InputError(
+            f"av = {star.av:g} mag is above {AV_MAX:g} mag, the most that is tabulated"
+        )
     if not star.e_av:
         if star.av < 0.0:
             notes.append(f"av = {star.av:g} mag taken as 0")
@@ -297,9 +299,7 @@ def _emitter_parameters(
     return [Parameter("ln_temperature", prior)]
 
 
-def _bands(
-    detections: list[Measurement], limits: list[Measurement], settings: Settings
-) -> Bands:
+def _bands(detections: list[Measurement], limits: list[Measurement], settings: Settings) -> Bands:
     used = detections + limits
     bands = [load_band(item.band) for item in used]
     own = np.array([band.zero_point_error_mag * MAG for band in bands])

@@ -9,7 +9,7 @@ from __future__ import annotations
 import math
 import tomllib
 from collections.abc import Mapping
-from dataclasses import asdict, dataclass, field, fields
+from dataclasses import MISSING, asdict, dataclass, field, fields
 from difflib import get_close_matches
 from pathlib import Path
 from typing import Any
@@ -18,10 +18,7 @@ from starkiln.errors import SettingsError
 
 
 def _setting(default: Any, key: str, text: str, **bounds: Any) -> Any:
-    meta = {"key": key, "text": text, **bounds}
-    if isinstance(default, dict):
-        return field(default_factory=lambda: dict(default), metadata=meta)
-    return field(default=default, metadata=meta)
+    return field(default=default, metadata={"key": key, "text": text, **bounds})
 
 
 @dataclass(frozen=True)
@@ -67,11 +64,13 @@ class Settings:
         choices=("column", "free", "zero"),
     )
     dust_law: str = _setting("G23", "dust.law", "extinction law, by its published name")
-    dust_rv: float = _setting(
-        3.1, "dust.rv", "R_V where the row gives none", lower=2.0, upper=6.0
-    )
+    dust_rv: float = _setting(3.1, "dust.rv", "R_V where the row gives none", lower=2.0, upper=6.0)
     dust_width: float = _setting(
-        1.0, "dust.width", "mag; width of the half-normal prior of free dust", lower=1e-3, upper=10.0
+        1.0,
+        "dust.width",
+        "mag; width of the half-normal prior of free dust",
+        lower=1e-3,
+        upper=10.0,
     )
     likelihood: str = _setting(
         "log",
@@ -84,14 +83,18 @@ class Settings:
         True, "likelihood.misfit", "false: quoted errors alone, as if the star were the emitter"
     )
     system_offsets: bool = _setting(
-        True, "offsets.on", "zero-point errors: each band's own, and one common offset per photometric system"
+        True,
+        "offsets.on",
+        "zero-point errors: each band's own, and one common offset per photometric system",
     )
-    system_offset_errors: dict[str, float] = _setting(
-        {},
-        "offsets.errors",
-        'mag; a table such as { "2MASS" = 0.02 } that replaces the built-in zero-point error',
-        lower=0.0,
-        upper=1.0,
+    system_offset_errors: dict[str, float] = field(
+        default_factory=dict,
+        metadata={
+            "key": "offsets.errors",
+            "text": 'mag; such as { "2MASS" = 0.02 }, in place of the built-in common offset',
+            "lower": 0.0,
+            "upper": 1.0,
+        },
     )
     distance_prior: str = _setting(
         "exponential",
@@ -117,7 +120,11 @@ class Settings:
         upper=1.0,
     )
     parallax_error_factor: float = _setting(
-        1.0, "distance.parallax_error_factor", "multiplies every parallax error", lower=0.1, upper=10.0
+        1.0,
+        "distance.parallax_error_factor",
+        "multiplies every parallax error",
+        lower=0.1,
+        upper=10.0,
     )
     draws: int = _setting(
         256, "sampling.draws", "posterior draws kept per star", lower=0, upper=100_000
@@ -204,12 +211,9 @@ def describe_settings() -> str:
         if head != section:
             lines.append(f"[{head}]")
             section = head
-        default = {} if item.default_factory is not _MISSING else item.default
+        default = {} if item.default is MISSING else item.default
         lines.append(f"  {key} = {_toml(default)}   {item.metadata['text']}")
     return "\n".join(lines)
-
-
-_MISSING = fields(Settings)[0].default_factory
 
 
 def _from_tables(content: Mapping[str, Any]) -> dict[str, Any]:
@@ -234,7 +238,7 @@ def _nearest(text: str, known: Mapping[str, str]) -> str:
 def _checked(item: Any, value: Any) -> Any:
     meta, default = item.metadata, item.default
     key = meta["key"]
-    if item.default_factory is not _MISSING:
+    if default is MISSING:
         if not isinstance(value, Mapping):
             raise SettingsError(f"{key} = {value!r} must be a table of numbers")
         return {str(k): _number(v, f"{key}.{k}", meta) for k, v in value.items()}

@@ -6,6 +6,7 @@ hand. Every measurement is kept as band mean of the flux per wavelength.
 """
 
 from starkiln.observations._catalogue import Catalogue, read_catalogue, survey_catalogue
+from starkiln.observations._columns import read_columns
 from starkiln.observations._layout import Column
 from starkiln.observations._measure import Measurement
 from starkiln.observations._sheet import Sheet, read_sheet
@@ -19,6 +20,7 @@ __all__ = [
     "Sheet",
     "Star",
     "read_catalogue",
+    "read_columns",
     "read_sheet",
     "survey_catalogue",
 ]

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from starkiln.constants import C, C2, H
+from starkiln.constants import C2, C, H
 
 _FIRST = 2.0 * H.value * C.value**2
 

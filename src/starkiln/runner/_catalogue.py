@@ -9,7 +9,7 @@ import shutil
 import time
 from collections.abc import Callable, Iterator
 from concurrent.futures import FIRST_COMPLETED, Future, wait
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from datetime import UTC, datetime
 from importlib.metadata import version
 from pathlib import Path
@@ -21,7 +21,7 @@ from starkiln._version import __version__
 from starkiln.errors import InputError, SettingsError
 from starkiln.inference import Settings, describe_priors
 from starkiln.observations import BadRow, Catalogue, Star
-from starkiln.runner._executors import Executor, make_executor, outcome
+from starkiln.runner._executors import make_executor, outcome
 from starkiln.runner._folder import PARTS, Part, done_rows, prepare, write_meta, write_part
 from starkiln.runner._join import join_parts
 from starkiln.runner._run import Run, open_run
@@ -51,7 +51,7 @@ class Recipe:
 
     emitter: str = "blackbody"
     engine: str = "ensemble"
-    settings: Settings = Settings()
+    settings: Settings = field(default_factory=Settings)
     seed: int = 0
     keep_draws: bool = True
 
@@ -188,7 +188,7 @@ def _work(
     todo = sum(stop - start for start, stop in gaps)
     state = {"fresh": 0, "rejected": 0, "rate": 0.0}
     executor = make_executor(min(workers, max(todo, 1)))
-    pending: dict[Future, tuple[int, float]] = {}
+    pending: dict[Future, int] = {}
     units = _units(gaps, state)
     finished = False
     try:
@@ -196,13 +196,13 @@ def _work(
             while len(pending) < 2 * executor.slots and (unit := next(units, None)):
                 start, stop = unit
                 future = executor.submit(fit_rows, catalogue.rows(start, stop), recipe)
-                pending[future] = (start, time.monotonic())
+                pending[future] = start
                 if executor.slots == 1:
                     break
             if not pending:
                 break
             for future in wait(pending, return_when=FIRST_COMPLETED).done:
-                start, sent = pending.pop(future)
+                start = pending.pop(future)
                 part = Part(start, *outcome(future))
                 write_part(folder, part)
                 state["fresh"] += len(part.results)

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import multiprocessing
-import os
 import signal
 from collections.abc import Callable
 from concurrent.futures import Future, ProcessPoolExecutor
@@ -11,10 +10,6 @@ from concurrent.futures.process import BrokenProcessPool
 from typing import Any, Protocol
 
 from starkiln.errors import StarkilnError
-
-#: One thread of linear algebra per worker: the workers already fill the cores, and
-#: sums are then rounded alike whatever the machine's number of cores.
-THREAD_LIMITS = ("OMP_NUM_THREADS", "OPENBLAS_NUM_THREADS", "MKL_NUM_THREADS")
 
 
 class Executor(Protocol):
@@ -52,9 +47,6 @@ class PoolExecutor:
 
     def __init__(self, workers: int) -> None:
         self.slots = workers
-        before = {name: os.environ.get(name) for name in THREAD_LIMITS}
-        os.environ.update(dict.fromkeys(THREAD_LIMITS, "1"))
-        self._before = before
         self._pool = ProcessPoolExecutor(
             workers, multiprocessing.get_context("spawn"), initializer=_ignore_interrupt
         )
@@ -69,11 +61,6 @@ class PoolExecutor:
             for process in list((self._pool._processes or {}).values()):
                 process.kill()
         self._pool.shutdown(wait=not at_once, cancel_futures=True)
-        for name, value in self._before.items():
-            if value is None:
-                os.environ.pop(name, None)
-            else:
-                os.environ[name] = value
 
 
 def make_executor(workers: int) -> Executor:

@@ -138,7 +138,7 @@ def write_part(folder: Path, part: Part) -> None:
             arrays[f"names{i}"] = np.array(list(draws))
     path = folder / PARTS / f"rows-{part.start + 1:09d}-{part.stop:09d}.npz"
     path.parent.mkdir(exist_ok=True)
-    atomic_write(path, lambda stream: np.savez(stream, **arrays))
+    atomic_write(path, lambda stream: np.savez(stream, allow_pickle=False, **arrays))
 
 
 def read_parts(folder: Path) -> Iterator[Part]:
@@ -185,8 +185,11 @@ def _refuse_difference(folder: Path, old: Mapping[str, Any], new: Mapping[str, A
             continue
         if isinstance(before, Mapping) and isinstance(after, Mapping):
             inner = next(k for k in [*after, *before] if before.get(k) != after.get(k))
-            key, before, after = f"{_WHAT.get(key, key)} {inner}", before.get(inner), after.get(inner)
+            label = f"{_WHAT.get(key, key)} {inner}"
+            before, after = before.get(inner), after.get(inner)
+        else:
+            label = _WHAT.get(key, key)
         raise RunFolderError(
-            f"{folder} holds another run: {_WHAT.get(key, key)} was {before!r}, now {after!r}; "
+            f"{folder} holds another run: {label} was {before!r}, now {after!r}; "
             "use another folder, or the command that it was begun with"
         )

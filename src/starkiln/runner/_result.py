@@ -164,5 +164,3 @@ def _digits(error: float) -> int:
     if not np.isfinite(error) or error <= 0.0:
         return 3
     return max(0, 1 - int(np.floor(np.log10(error))))
-
-

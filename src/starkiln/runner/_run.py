@@ -45,8 +45,8 @@ class Run:
     @cached_property
     def settings(self) -> Settings:
         """The settings of the run."""
-        stored = self.meta["identity"]["settings"]
-        return Settings(**{k: tuple(v) if isinstance(v, list) else v for k, v in stored.items()})
+        stored: Mapping[str, Any] = self.meta["identity"]["settings"]
+        return Settings(**stored)
 
     def draws(self, row: int) -> Any:
         """Return the posterior draws of input row `row`, counted from 1, or None.

@@ -23,6 +23,7 @@ from starkiln.inference import (
 )
 from starkiln.observations import Star
 from starkiln.runner._result import FitResult
+from starkiln.runner._threads import one_thread
 
 #: Draws that a result holds at most; its percentiles come from all.
 _MOST_DRAWS = 4000
@@ -70,7 +71,8 @@ def fit(
     problem = build_problem(star, emitter, dust, settings)
     distance = distance_of(star, settings)
     stream, seed = _stream(star, rng)
-    samples = engine_of(engine)(problem, stream)
+    with one_thread():
+        samples = engine_of(engine)(problem, stream)
     distance_pc = None if distance is None else distance.draw(stream, len(samples.x))
     draws = quantities_of(problem, samples.x, distance_pc)
     probability = fit_probability(problem, samples)

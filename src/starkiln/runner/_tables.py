@@ -131,9 +131,6 @@ def photometry_table(stars: Iterable[Star]) -> Any:
     return build_table(photometry_rows(stars), PHOTOMETRY_COLUMNS)
 
 
-
-
-
 def _column(values: list[Any], kind: str, masked_column: Any) -> Any:
     if kind == "U":
         return np.array(["" if value is None else str(value) for value in values], dtype=str)

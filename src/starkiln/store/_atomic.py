@@ -24,7 +24,7 @@ _REMEDY = {
 
 
 def atomic_write(path: str | Path, write: Callable[[IO[Any]], object], *, mode: str = "wb") -> Path:
-    """Write a file under a temporary name, flush it to disk, then rename it.
+    r"""Write a file under a temporary name, flush it to disk, then rename it.
 
     Parameters
     ----------

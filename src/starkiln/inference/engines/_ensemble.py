@@ -7,6 +7,8 @@ releases this was built on.
 
 from __future__ import annotations
 
+from typing import Any
+
 import numpy as np
 
 from starkiln.inference._problem import Problem
@@ -41,7 +43,9 @@ def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
 
     settings = problem.settings
     population, _ = tempered_start(problem, rng)
-    start = population[rng.choice(len(population), settings.walkers, replace=settings.walkers > len(population))]
+    start = population[
+        rng.choice(len(population), settings.walkers, replace=settings.walkers > len(population))
+    ]
     moves = [(emcee.moves.DEMove(), 0.6), (emcee.moves.KDEMove(), 0.4)]
     sampler = emcee.EnsembleSampler(
         settings.walkers, start.shape[1], problem.ln_posterior, vectorize=True, moves=moves
@@ -81,7 +85,7 @@ def _split(chain: np.ndarray) -> tuple[int, np.ndarray]:
     return burn, integrated_time(chain[burn:], tol=0)
 
 
-def _random_state(rng: np.random.Generator) -> tuple:
+def _random_state(rng: np.random.Generator) -> Any:
     words = rng.integers(0, 2**32, size=8, dtype=np.uint64)
     return np.random.RandomState(np.random.MT19937(np.random.SeedSequence(words))).get_state()
 
