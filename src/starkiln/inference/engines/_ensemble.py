@@ -11,13 +11,15 @@ from typing import Any
 
 import numpy as np
 
+from starkiln.inference._autocorrelation import autocorrelation_time
 from starkiln.inference._problem import Problem
 from starkiln.inference._samples import Samples
 from starkiln.inference.engines._tempered import tempered_start
 
 #: Autocorrelation times that are thrown away before the kept chain.
 BURN_IN_LENGTHS = 5
-_BLOCK = 100
+#: The chain is looked at after so many steps, and then each time it has grown by a third.
+_FIRST_LOOK, _GROWTH = 200, 1.33
 
 
 def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
@@ -51,8 +53,11 @@ def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
         settings.walkers, start.shape[1], problem.ln_posterior, vectorize=True, moves=moves
     )
     state = emcee.State(start, random_state=_random_state(rng))
+    steps = _FIRST_LOOK
     while True:
-        state = sampler.run_mcmc(state, _BLOCK, skip_initial_state_check=True)
+        steps = min(steps, settings.max_steps)
+        more = steps - sampler.iteration
+        state = sampler.run_mcmc(state, more, skip_initial_state_check=True)
         chain = sampler.get_chain()
         burn, tau = _split(chain)
         kept = len(chain) - burn
@@ -63,6 +68,7 @@ def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
         )
         if converged or len(chain) >= settings.max_steps:
             break
+        steps = max(int(_GROWTH * len(chain)), len(chain) + 100)
     message = "" if converged else _shortfall(len(chain), kept, tau.max(), n_eff, problem)
     return Samples(
         x=chain[burn:].reshape(-1, chain.shape[2]),
@@ -78,11 +84,9 @@ def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
 
 def _split(chain: np.ndarray) -> tuple[int, np.ndarray]:
     """Return the burn-in and the autocorrelation time of each parameter after it."""
-    from emcee.autocorr import integrated_time
-
-    tau = integrated_time(chain, tol=0)
-    burn = min(int(BURN_IN_LENGTHS * np.nanmax(tau)) + 1, len(chain) // 2)
-    return burn, integrated_time(chain[burn:], tol=0)
+    tau = autocorrelation_time(chain)
+    burn = int(min(BURN_IN_LENGTHS * tau.max() + 1, len(chain) // 2))
+    return burn, autocorrelation_time(chain[burn:])
 
 
 def _random_state(rng: np.random.Generator) -> Any:
