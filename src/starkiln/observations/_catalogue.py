@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
-from hashlib import sha256
 from pathlib import Path
 from typing import Any
 
 from starkiln.errors import CatalogueError
 from starkiln.observations._files import Source, open_source
-from starkiln.observations._layout import Column, Layout, lay_out
-from starkiln.observations._rows import build_rows
+from starkiln.observations._layout import lay_out
+from starkiln.observations._plan import Column, Layout
+from starkiln.observations._propose import propose_sheet
+from starkiln.observations._rows import build_rows, numbers_of
 from starkiln.observations._sheet import Sheet, read_sheet
 from starkiln.observations._star import BadRow, Star
 
@@ -50,7 +51,7 @@ class Catalogue:
     @property
     def sheet_checksum(self) -> str:
         """SHA-256 of what the column sheet says."""
-        return sha256(repr(self._sheet).encode()).hexdigest()
+        return self._sheet.checksum()
 
     def has(self, meaning: str) -> bool:
         """Whether a column of that meaning, such as `parallax`, is in use."""
@@ -86,6 +87,19 @@ class Catalogue:
         """
         begin, end, _ = slice(start, stop).indices(len(self))
         return build_rows(self._source, self._layout, self._sheet, begin, end, self._rv)
+
+    def filled(self) -> dict[str, int]:
+        """Return, for each column of numbers in use, how many cells hold something."""
+        return {
+            cells.heading: sum(
+                number is not None for number in numbers_of(self._source, cells, 0, len(self))
+            )
+            for cells in self._layout.cells()
+        }
+
+    def proposal(self) -> str:
+        """Return a column sheet for headings that look useful and are not understood."""
+        return propose_sheet(self._source, self._layout, self._sheet)
 
     def _same_names(self) -> list[str]:
         if not self._layout.name:

@@ -10,12 +10,12 @@ import numpy as np
 from starkiln.errors import InputError
 from starkiln.observations._files import Source
 from starkiln.observations._from_python import check_value
-from starkiln.observations._layout import BandColumn, Cells, KnownColumn, Layout
 from starkiln.observations._measure import MAG_TO_LN, Measurement, check_error, measure
+from starkiln.observations._plan import BandColumn, Cells, KnownColumn, Layout
 from starkiln.observations._sheet import Sheet
 from starkiln.observations._star import BadRow, Star
 
-__all__ = ["build_rows", "missing_mask", "name_of"]
+__all__ = ["build_rows", "numbers_of"]
 
 #: Cells of text that hold nothing, in lower case.
 _NOTHING = frozenset({"", "nan", "null", "none", "na", "n/a", "-", "--", "---", "...", "masked"})
@@ -28,8 +28,7 @@ def build_rows(
     source: Source, layout: Layout, sheet: Sheet, start: int, stop: int, rv: float
 ) -> list[Star | BadRow]:
     """Return the stars of rows `start` to `stop` (from 0, `stop` left out)."""
-    needed = {cells.heading: cells for cells in _all_cells(layout)}
-    numbers = {h: _numbers(source, cells, start, stop) for h, cells in needed.items()}
+    numbers = {cells.heading: numbers_of(source, cells, start, stop) for cells in layout.cells()}
     limits = {
         band.limit: _texts(source, band.limit, start, stop) for band in layout.bands if band.limit
     }
@@ -41,16 +40,6 @@ def build_rows(
         )
         for i in range(len(names))
     ]
-
-
-def name_of(text: str, row: int) -> str:
-    """Return the name to show for a star."""
-    return text or f"row {row}"
-
-
-def missing_mask(source: Source, cells: Cells, start: int, stop: int) -> list[bool]:
-    """Return which cells hold nothing."""
-    return [number is None for number in _numbers(source, cells, start, stop)]
 
 
 class _Row:
@@ -79,7 +68,7 @@ class _Row:
             if measurements:
                 why.append("only limits are given")
             self.problems.append(f"no band can be used: {'; '.join(why) or 'all are empty'}")
-        name = name_of(self.name, self.row)
+        name = self.name or f"row {self.row}"
         if self.problems:
             where = f"{self.source.path.name}, row {self.row}"
             return BadRow(name, self.row, f"{where}, {'; '.join(self.problems)}")
@@ -106,6 +95,8 @@ class _Row:
                 heading = band.error.heading
             error = None if flag else _error(band, numbers)
             heading = band.value.heading
+            if error is None and not flag and band.bare_is_limit:
+                flag = ">" if band.reading.unit.kind == "mag" else "<"
             outcome = measure(band.reading, value, error, flag, relative=band.error is None)
         except InputError as problem:
             self.problems.append(f"column '{heading}': {problem}")
@@ -159,18 +150,12 @@ class _Row:
         return dust
 
 
-def _all_cells(layout: Layout) -> list[Cells]:
-    cells = []
-    for band in layout.bands:
-        cells += [band.value, band.error, band.signal_to_noise]
-    for known in layout.known:
-        cells += [known.value, known.error]
-    return [cell for cell in cells if cell is not None]
-
-
 def _error(band: BandColumn, numbers: dict[str, Number]) -> float | None:
     if band.error is not None:
-        return check_error(band.reading, _plain(numbers[band.error.heading]))
+        error = _plain(numbers[band.error.heading])
+        if error is not None:
+            check_error(band.reading, error)
+        return error
     if band.signal_to_noise is None:
         return band.constant
     ratio = _plain(numbers[band.signal_to_noise.heading])
@@ -213,7 +198,8 @@ def _plain(number: Number) -> float | None:
     return number
 
 
-def _numbers(source: Source, cells: Cells, start: int, stop: int) -> list[Number]:
+def numbers_of(source: Source, cells: Cells, start: int, stop: int) -> list[Number]:
+    """Return the numbers of a column: None where nothing stands, a text where no number does."""
     column = source.cells(cells.heading, start, stop)
     column = getattr(column, "value", column) if hasattr(column, "to_value") else column
     data = np.ma.asarray(column)

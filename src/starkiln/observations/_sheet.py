@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import tomllib
-from dataclasses import dataclass, field, fields
+from dataclasses import dataclass, field, fields, replace
+from hashlib import sha256
 from pathlib import Path
 from typing import Any
 
@@ -17,6 +18,7 @@ from starkiln.passbands import band_names, match_band
 
 __all__ = ["Binding", "Sheet", "read_sheet"]
 
+_BARE = ("leave out", "limit")
 _SYSTEMS = {"vega": "Vega", "ab": "AB", "st": "ST"}
 
 
@@ -40,6 +42,8 @@ class Binding:
         None for the sheet's.
     saturated : str
         Empty for the sheet's.
+    without_error : str
+        Empty for the sheet's.
     missing : tuple
         Values that mean missing here, beside the sheet's.
     """
@@ -53,6 +57,7 @@ class Binding:
     floor: float | None = None
     limit_sigma: float | None = None
     saturated: str = ""
+    without_error: str = ""
     missing: tuple[Any, ...] = ()
 
 
@@ -71,13 +76,17 @@ class Sheet:
     missing : tuple
         Numbers or texts that mean missing in every column.
     floor : float
-        The smallest error of every band: mag, or a fraction of a flux.
+        The smallest error of every band, and the error of a band that has no
+        column of errors: mag, or a fraction of a flux.
     limit_sigma : float
         At how many sigma limits are.
     distance_from : str
         `parallax` or `distance`: which counts in a row that has both.
     saturated : str
         One of `default`, `widen`, `drop`, `keep`.
+    without_error : str
+        A magnitude or flux whose cell of the error is empty: `leave out` (by
+        default), or `limit`, an upper limit of flux.
     """
 
     path: str = ""
@@ -88,6 +97,11 @@ class Sheet:
     limit_sigma: float = 3.0
     distance_from: str = ""
     saturated: str = "default"
+    without_error: str = "leave out"
+
+    def checksum(self) -> str:
+        """SHA-256 of what it says, wherever it stands."""
+        return sha256(repr(replace(self, path="")).encode()).hexdigest()
 
 
 _TOP = [f.name for f in fields(Sheet) if f.name != "path"]
@@ -137,6 +151,7 @@ def _sheet(content: dict[str, Any], path: str) -> Sheet:
         limit_sigma=_number(content.get("limit_sigma", 3.0), "limit_sigma"),
         distance_from=_choice(content, "distance_from", ("parallax", "distance"), ""),
         saturated=_choice(content, "saturated", SATURATED, "default"),
+        without_error=_choice(content, "without_error", _BARE, "leave out"),
     )
 
 
@@ -167,6 +182,7 @@ def _binding(heading: str, entry: Any) -> Binding:
         floor=None if floor is None else _number(floor, f"{where}: floor", zero=True),
         limit_sigma=None if sigma is None else _number(sigma, f"{where}: limit_sigma"),
         saturated=_choice(entry, "saturated", SATURATED, "", where),
+        without_error=_choice(entry, "without_error", _BARE, "", where),
         missing=_missing(entry.get("missing", []), f"{where}: missing"),
     )
 

@@ -22,7 +22,8 @@ _MAGNITUDES = {
     "magvega": "Vega",
 }
 _SPELLINGS = {"jy": "Jy", "jansky": "Jy", "janskys": "Jy", "kelvin": "K", "degk": "K"}
-_DEX = ("dex", "log(", "[cm/s2]", "[-]", "[sun]", "[cm.s**-2]")
+#: How archives write the unit of log g and of [Fe/H].
+_DEX = ("dex", "log", "[cm/s2]", "[-]", "[sun]")
 
 
 @dataclass(frozen=True)
@@ -73,7 +74,7 @@ def parse_unit(text: str) -> ColumnUnit:
         bare = bare.replace(mark, "")
     if bare in _MAGNITUDES:
         return ColumnUnit("mag", "mag", system=_MAGNITUDES[bare])
-    if words.casefold().startswith(_DEX):
+    if words.casefold() == "dex" or words.casefold().startswith(_DEX[1:]):
         return ColumnUnit("dex", "dex")
     return _classify(_astropy_unit(_SPELLINGS.get(bare, words)), text)
 
@@ -126,6 +127,9 @@ def _classify(unit: Any, text: str) -> ColumnUnit:
         if unit == u.ABmag:
             return ColumnUnit("mag", "mag", system="AB")
         raise InputError(f"unit '{text}' is a magnitude of a scale that is neither Vega nor AB")
+    if isinstance(unit, u.function.logarithmic.LogUnit):
+        solar = unit.physical_unit in (u.one, u.cm / u.s**2)
+        return ColumnUnit("dex" if solar else str(unit), "dex" if solar else "other")
     if unit.is_equivalent(u.mag):
         return ColumnUnit(str(unit), "mag", factor=float(unit.to(u.mag)))
     if u.A in getattr(unit, "bases", ()):
