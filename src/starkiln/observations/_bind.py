@@ -12,13 +12,10 @@ from starkiln.observations._headings import (
     meaning_of,
     split_unit,
 )
-from starkiln.observations._plan import Layout
+from starkiln.observations._plan import LEFT_OUT, UNUSABLE, Layout
 from starkiln.observations._sheet import Binding, Sheet
 
-__all__ = ["LEFT_OUT", "Headings"]
-
-#: Remark of a column that the observer does not want.
-LEFT_OUT = "left out by the sheet"
+__all__ = ["Headings"]
 
 _NO_BINDING = Binding()
 
@@ -121,18 +118,21 @@ class Headings:
             loser = heading if chosen[0] == other else other
             self.layout.mark(loser, remark=f"the sheet takes '{chosen[0]}' instead")
             return
+        self.layout.mark(heading, meaning.heading, remark=UNUSABLE)
         self.layout.errors.append(
             f"{self.source.path}: the columns '{other}' and '{heading}' both mean "
             f'{meaning.heading}; leave one out in a column sheet: leave_out = ["{heading}"]'
         )
 
     def _unknown(self, heading: str) -> None:
-        near = looks_like_band(heading) or looks_like_band(split_unit(heading)[0])
+        head, near = looks_like_band(split_unit(heading)[0])
         if near:
+            self.layout.mark(heading, remark=UNUSABLE)
             self.layout.errors.append(
                 f"{self.source.path}: the heading '{heading}' looks like a band, but no band is "
                 f"called so (nearest: {', '.join(near)}); rename it, or say in a column sheet "
-                f'what it is, [columns] "{heading}" = "{near[0]}", or leave_out = ["{heading}"]'
+                f'what it is, [columns] "{heading}" = "{head}{near[0]}", or leave_out = '
+                f'["{heading}"]'
             )
 
     def _take_name(self) -> None:

@@ -9,10 +9,10 @@ from pathlib import Path
 from typing import Any
 
 from starkiln.errors import CatalogueError, InputError
-from starkiln.observations._headings import duplicates
+from starkiln.observations._headings import duplicates, meaning_of
 from starkiln.observations._units_of_columns import parse_unit
 
-__all__ = ["Lines", "check_ragged", "delimited"]
+__all__ = ["delimited"]
 
 _DELIMITERS = {",": "commas", ";": "semicolons", "\t": "tabs", "|": "bars"}
 _NUMBER = re.compile(r"[+-]?(\d+[.,]?\d*|[.,]\d+)([eE][+-]?\d+)?")
@@ -22,7 +22,7 @@ _RULE = re.compile(r"(?=.*-{2})[\s|+:=,;-]+")
 Row = tuple[int, list[str]]  # the line's number in the file, and its cells
 
 
-class Lines:
+class _Lines:
     """The lines of a text that hold cells, and the comments.
 
     Attributes
@@ -58,9 +58,9 @@ class Lines:
         best = max(counts, key=lambda mark: counts[mark])
         return best if counts[best] else " "
 
-    def split(self, delimiter: str, *, keep_empty: bool = False) -> list[Row]:
+    def split(self, delimiter: str) -> list[Row]:
         """Cut the rows into cells."""
-        return _split(self.rows, delimiter, keep_empty)
+        return _split(self.rows, delimiter)
 
 
 def delimited(path: Path, text: str, remarks: list[str]) -> tuple[Any, str]:
@@ -83,14 +83,14 @@ def delimited(path: Path, text: str, remarks: list[str]) -> tuple[Any, str]:
     CatalogueError
         No headings, ragged, or two headings alike.
     """
-    lines = Lines(text)
+    lines = _Lines(text)
     if not lines.rows:
         raise CatalogueError(f"{path}: there are only comments, no table")
     delimiter = lines.delimiter()
     header, units, rows = _header(path, lines, delimiter)
     while header and not header[-1].strip():
         header.pop()
-    check_ragged(path, header, [(0, units), *rows] if units else rows, delimiter)
+    _check_ragged(path, header, [(0, units), *rows] if units else rows, delimiter)
     full = [row for row in rows if any(cell.strip() for cell in row[1])]
     if len(full) < len(rows):
         remarks.append(f"{len(rows) - len(full)} lines hold nothing but separators; passed over")
@@ -100,7 +100,7 @@ def delimited(path: Path, text: str, remarks: list[str]) -> tuple[Any, str]:
     return _table(_names(path, header), units, full), kind
 
 
-def check_ragged(path: Path, header: list[str], rows: list[Row], delimiter: str) -> None:
+def _check_ragged(path: Path, header: list[str], rows: list[Row], delimiter: str) -> None:
     """Refuse a row whose count of cells differs from the heading's; empty ones may follow.
 
     Raises
@@ -112,22 +112,25 @@ def check_ragged(path: Path, header: list[str], rows: list[Row], delimiter: str)
         extra = cells[len(header) :]
         if len(cells) < len(header) or any(cell.strip() for cell in extra):
             line = f"line {number}" if number else "the line of units"
+            known = delimiter != " " or any(meaning_of(heading) for heading in header)
+            file = f"{path}" if known else f"{path} does not look like a table"
             raise CatalogueError(
-                f"{path}, {line}: found {len(cells)} cells where the heading has {len(header)} "
+                f"{file}, {line}: found {len(cells)} cells where the heading has {len(header)} "
                 f"(separated by {_DELIMITERS.get(delimiter, 'spaces')}); leave an empty cell for "
                 "a missing value, and quote a text that holds the separator"
             )
 
 
-def _split(lines: list[tuple[int, str]], delimiter: str, keep_empty: bool = False) -> list[Row]:
-    stream = io.StringIO("\n".join(line for _, line in lines), newline="")
+def _split(lines: list[tuple[int, str]], delimiter: str) -> list[Row]:
+    texts = [line for _, line in lines]
+    if delimiter == " ":
+        texts = [line.strip().replace("\t", " ") for line in texts]
+    stream = io.StringIO("\n".join(texts), newline="")
     reader = csv.reader(stream, delimiter=delimiter, skipinitialspace=True)
     rows = []
     try:
         for cells in reader:
             number = lines[min(reader.line_num, len(lines)) - 1][0]
-            if delimiter == " " and not keep_empty:
-                cells = [part for cell in cells for part in cell.split("\t") if part]
             rows.append((number, cells))
     except csv.Error as error:
         number = lines[min(reader.line_num, len(lines)) - 1][0]
@@ -135,7 +138,7 @@ def _split(lines: list[tuple[int, str]], delimiter: str, keep_empty: bool = Fals
     return rows
 
 
-def _header(path: Path, lines: Lines, delimiter: str) -> tuple[list[str], list[str], list[Row]]:
+def _header(path: Path, lines: _Lines, delimiter: str) -> tuple[list[str], list[str], list[Row]]:
     """Return the headings, the units (empty for none) and the rows below them."""
     rules = [i for i, (_, line) in enumerate(lines.rows[:4]) if _RULE.fullmatch(line)]
     for place in reversed(rules):

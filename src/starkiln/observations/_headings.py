@@ -113,10 +113,21 @@ def split_unit(heading: str) -> tuple[str, str]:
     return match[1], match[2] or match[3]
 
 
-def looks_like_band(heading: str) -> list[str]:
-    """Return the nearest bands for a heading that looks like one and is none."""
-    base = _error_base(heading.strip()) or re.sub(r"^l_", "", heading.strip(), flags=re.I)
-    key = heading_key(base)
+def looks_like_band(heading: str) -> tuple[str, list[str]]:
+    """Return what a heading means that looks like a band's and is none.
+
+    Returns
+    -------
+    str, list of str
+        `e_`, `l_` or nothing, and the nearest bands, none if it looks like no band.
+    """
+    text = heading.strip()
+    base = _error_base(text)
+    head = "e_" if base else "l_" if text[:2].casefold() == "l_" else ""
+    return head, _near_bands(heading_key(base or text.removeprefix(head)))
+
+
+def _near_bands(key: str) -> list[str]:
     names = {heading_key(name): name for name in band_names()}
     near = [names[word] for word in nearest(key, names, 3)]
     system = next((word for word in _SYSTEM_WORDS if key.startswith(word)), None)

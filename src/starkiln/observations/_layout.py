@@ -9,17 +9,22 @@ from starkiln.observations._bind import Headings
 from starkiln.observations._files import Source
 from starkiln.observations._headings import meaning_of, split_unit
 from starkiln.observations._measure import Reading, zero_flux
-from starkiln.observations._plan import BandColumn, Cells, Column, KnownColumn, Layout
+from starkiln.observations._plan import (
+    NO_ERROR,
+    UNUSABLE,
+    BandColumn,
+    Cells,
+    Column,
+    KnownColumn,
+    Layout,
+)
 from starkiln.observations._quantities import BY_NAME, Known
 from starkiln.observations._sheet import Binding, Sheet
 from starkiln.observations._trade import guess
 from starkiln.observations._units_of_columns import ColumnUnit, factor_to, parse_unit
 from starkiln.passbands import load_band
 
-__all__ = ["NO_ERROR", "lay_out"]
-
-#: Remark of a column that cannot be used because nothing tells its error.
-NO_ERROR = "it has no error"
+__all__ = ["lay_out"]
 
 _PHOTOMETRY = ("mag", "per wavelength", "per frequency")
 
@@ -38,6 +43,7 @@ def lay_out(source: Source, sheet: Sheet) -> Layout:
             else:
                 reader.band(target, heading)
         except InputError as error:
+            layout.mark(heading, target, remark=UNUSABLE)
             layout.errors.append(f"{source.path}, column '{heading}': {error}")
     _mark_rest(source, layout, headings)
     return layout
@@ -91,7 +97,7 @@ class _Reader:
         if unit.kind not in _PHOTOMETRY:
             raise InputError(
                 f"unit '{unit.text}' is neither a magnitude nor a flux density; "
-                + _unit_hint(heading)
+                + _unit_hint(heading, "mag")
             )
         system = binding.system or unit.system
         reading = Reading(
@@ -103,17 +109,18 @@ class _Reader:
             saturated=binding.saturated or self.sheet.saturated,
         )
         zero_flux(reading)
+        limit = self.headings.partner("limit", band, heading)
         bare = binding.without_error or self.sheet.without_error
         column = BandColumn(
             reading,
             self._cells(heading),
-            limit=self.headings.partner("limit", band, heading),
+            limit=self._cells(limit) if limit else None,
             bare_is_limit=bare == "limit",
         )
         column = self._with_error(column, binding)
         shown = system or load_band(band).native_system if unit.kind == "mag" else ""
         if column.limit:
-            self.layout.mark(column.limit, f"limit flag of {band}", used=True)
+            self.layout.mark(limit, f"limit flag of {band}", used=True)
         if column.error or column.constant or column.signal_to_noise:
             self.layout.mark(heading, band, unit.text, system=shown, used=True)
             self.layout.bands.append(column)
@@ -131,11 +138,15 @@ class _Reader:
         error = self.headings.partner("error", band, heading)
         if not error:
             return replace(column, constant=column.reading.floor or None)
-        unit = self._unit(error, "") if self._unit_text(error) else column.reading.unit
+        unit = (
+            self._unit(error, column.reading.unit.text)
+            if self._unit_text(error)
+            else column.reading.unit
+        )
         if unit.kind != column.reading.unit.kind:
             raise InputError(
                 f"its error, column '{error}', has unit '{unit.text}' where the value has "
-                f"'{column.reading.unit.text}'; {_unit_hint(error)}"
+                f"'{column.reading.unit.text}'; {_unit_hint(error, column.reading.unit.text)}"
             )
         self.layout.mark(error, f"error of {band}", unit.text, used=True)
         return replace(
@@ -156,7 +167,6 @@ class _Reader:
         elif error := self.headings.partner("error", known.name, heading):
             column = self._known_error(column, error, unit)
         elif known.error == "required":
-            self.layout.mark(heading, known.meaning, unit.text, remark=NO_ERROR)
             raise InputError(
                 f"a {known.name} needs an error: add a column 'e_{known.name}', or name its "
                 f'column in a column sheet, [columns] "{heading}" = {{ means = "{known.name}", '
@@ -167,7 +177,7 @@ class _Reader:
     def _known_error(self, column: KnownColumn, error: str, unit: ColumnUnit) -> KnownColumn:
         factor = column.factor
         if self._unit_text(error):
-            unit = self._unit(error, "")
+            unit = self._unit(error, column.known.unit)
             factor = factor_to(unit, column.known.unit)
         self.layout.mark(error, f"error of {column.known.name}", unit.text, used=True)
         return replace(column, error=self._cells(error), error_factor=factor)
@@ -192,8 +202,8 @@ class _Reader:
         try:
             return parse_unit(text)
         except InputError as error:
-            raise InputError(f"{error}; {_unit_hint(heading)}") from error
+            raise InputError(f"{error}; {_unit_hint(heading, default)}") from error
 
 
-def _unit_hint(heading: str) -> str:
-    return f'a column sheet can say it: [columns] "{heading}" = {{ unit = "mag" }}'
+def _unit_hint(heading: str, unit: str) -> str:
+    return f'a column sheet can say it: [columns] "{heading}" = {{ unit = "{unit or "mag"}" }}'

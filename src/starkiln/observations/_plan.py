@@ -9,7 +9,22 @@ from typing import Any
 from starkiln.observations._measure import Reading
 from starkiln.observations._quantities import Known
 
-__all__ = ["BandColumn", "Cells", "Column", "KnownColumn", "Layout"]
+__all__ = [
+    "LEFT_OUT",
+    "NO_ERROR",
+    "UNUSABLE",
+    "BandColumn",
+    "Cells",
+    "Column",
+    "KnownColumn",
+    "Layout",
+]
+
+#: Remarks of columns that are understood and not used: the observer does not want it,
+#: nothing tells its error, or something is wrong with it, which stands in `errors`.
+LEFT_OUT = "left out by the sheet"
+NO_ERROR = "it has no error"
+UNUSABLE = "cannot be used, see the error"
 
 
 @dataclass(frozen=True)
@@ -57,8 +72,8 @@ class BandColumn:
     error, signal_to_noise : Cells or None
     constant : float or None
         One error for all rows: mag, or a fraction of a flux.
-    limit : str
-        Heading of the limit flag; empty for none.
+    limit : Cells or None
+        The limit flag.
     bare_is_limit : bool
         A value without error is an upper limit of flux.
     """
@@ -68,7 +83,7 @@ class BandColumn:
     error: Cells | None = None
     signal_to_noise: Cells | None = None
     constant: float | None = None
-    limit: str = ""
+    limit: Cells | None = None
     bare_is_limit: bool = False
 
 

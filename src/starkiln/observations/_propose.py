@@ -6,10 +6,9 @@ import math
 from dataclasses import dataclass, field
 
 from starkiln.errors import InputError
-from starkiln.observations._bind import LEFT_OUT
 from starkiln.observations._files import Source
 from starkiln.observations._measure import BRIGHTEST, FAINTEST
-from starkiln.observations._plan import Cells, Column, Layout
+from starkiln.observations._plan import LEFT_OUT, UNUSABLE, Cells, Column, Layout
 from starkiln.observations._quantities import BY_NAME, QUANTITIES
 from starkiln.observations._rows import numbers_of
 from starkiln.observations._sheet import Sheet
@@ -46,7 +45,7 @@ def propose_sheet(source: Source, layout: Layout, sheet: Sheet) -> str:
     guesses = {
         heading: found
         for heading, column in layout.columns.items()
-        if not column.used and column.remark != LEFT_OUT
+        if not column.used and column.remark not in (LEFT_OUT, UNUSABLE)
         if (found := guess(heading) or _own(column))
     }
     _propose_name(draft, source, layout)

@@ -30,7 +30,9 @@ def build_rows(
     """Return the stars of rows `start` to `stop` (from 0, `stop` left out)."""
     numbers = {cells.heading: numbers_of(source, cells, start, stop) for cells in layout.cells()}
     limits = {
-        band.limit: _texts(source, band.limit, start, stop) for band in layout.bands if band.limit
+        band.limit.heading: _flags(source, band.limit, start, stop)
+        for band in layout.bands
+        if band.limit
     }
     names = _texts(source, layout.name, start, stop) if layout.name else [""] * (stop - start)
     return [
@@ -90,7 +92,8 @@ class _Row:
             flag, value = _flagged(numbers[heading], self.source.decimal_comma)
             if value is None:
                 return None
-            flag = _one_flag(flag, limits.get(band.limit, ""), band.limit)
+            if band.limit:
+                flag = _one_flag(flag, limits[band.limit.heading], band.limit.heading)
             if band.error:
                 heading = band.error.heading
             error = None if flag else _error(band, numbers)
@@ -131,8 +134,9 @@ class _Row:
         chosen = self.sheet.distance_from
         if not chosen:
             self.problems.append(
-                "both a parallax and a distance are given; choose in a column sheet: "
-                'distance_from = "parallax" (or "distance")'
+                f"column 'distance': {values['distance_pc']:g} pc is given beside a parallax of "
+                f"{values['parallax_mas']:g} mas; choose in a column sheet: distance_from = "
+                '"parallax" (or "distance")'
             )
             return
         other = "distance_pc" if chosen == "parallax" else "parallax_mas"
@@ -179,11 +183,14 @@ def _flagged(number: Number, decimal_comma: bool) -> tuple[str, float | None]:
 
 
 def _one_flag(inside: str, text: str, heading: str) -> str:
-    if text.casefold() in _NOTHING:
+    if not text:
         return inside
     flag = _FLAGS.get(text)
     if flag is None:
-        raise InputError(f"the limit flag '{text}' of column '{heading}' is neither '<' nor '>'")
+        raise InputError(
+            f"the limit flag '{text}' of column '{heading}' is neither '<' nor '>'; leave it "
+            "empty for a measured value"
+        )
     if inside and inside != flag:
         raise InputError(f"'{inside}' stands before the number and '{flag}' in '{heading}'")
     return flag
@@ -207,7 +214,7 @@ def numbers_of(source: Source, cells: Cells, start: int, stop: int) -> list[Numb
     if data.dtype.kind in "fiub":
         values = np.ma.filled(data.astype(float), math.nan).tolist()
         return [None if _is_code(value, codes) else value for value in values]
-    words = {str(item).strip().casefold() for item in cells.missing} | _NOTHING
+    words = _words(cells)
     texts = ["" if cell is np.ma.masked else _text(cell) for cell in data]
     return [_number(text, words, codes, source.decimal_comma) for text in texts]
 
@@ -236,6 +243,16 @@ def _is_number(item: Any) -> bool:
 def _is_code(value: float, codes: list[float]) -> bool:
     # A code kept in single precision is not exactly the one that the sheet names.
     return math.isnan(value) or any(math.isclose(value, code, rel_tol=1e-6) for code in codes)
+
+
+def _flags(source: Source, cells: Cells, start: int, stop: int) -> list[str]:
+    nothing = _words(cells)
+    texts = _texts(source, cells.heading, start, stop)
+    return ["" if text.casefold() in nothing else text for text in texts]
+
+
+def _words(cells: Cells) -> set[str]:
+    return {str(item).strip().casefold() for item in cells.missing} | _NOTHING
 
 
 def _texts(source: Source, heading: str, start: int, stop: int) -> list[str]:

@@ -13,7 +13,7 @@ from pathlib import Path
 from typing import Any
 
 from starkiln.errors import CatalogueError
-from starkiln.observations._delimited import Lines, check_ragged, delimited
+from starkiln.observations._delimited import delimited
 
 __all__ = ["TextTable", "read_text_table"]
 
@@ -52,7 +52,7 @@ def read_text_table(path: Path, raw: bytes) -> TextTable:
         if start[:12].casefold().startswith(head):
             raise CatalogueError(f"{path} is {what}, not a table")
     if re.match(r"#\s*%ECSV", start):
-        return TextTable("ECSV", _astropy(path, text, "ecsv"), remarks=remarks)
+        return TextTable("ECSV", _ecsv(path, text, remarks), remarks=remarks)
     if re.search(r"^\s*Byte-by-byte Description of file", start, re.M | re.I):
         return TextTable("CDS", _astropy(path, text, "mrt"), remarks=remarks)
     if start.startswith("\\") or (start.startswith("|") and _is_ipac(start)):
@@ -87,18 +87,37 @@ def _astropy(path: Path, text: str, style: str) -> Any:
         try:
             return Table.read(re.split(r"\r\n|\r|\n", text), format=f"ascii.{style}")
         except Exception as error:  # its readers raise many kinds
-            if style == "ecsv":
-                _explain_ragged(path, text)
             first = (str(error).strip() or type(error).__name__).splitlines()[0]
             raise CatalogueError(
                 f"{path}: it looks like {style.upper()}, but cannot be read as that: {first}"
             ) from error
 
 
-def _explain_ragged(path: Path, text: str) -> None:
-    """Name the ragged line of an ECSV file, if that is what is wrong with it."""
-    lines = Lines(text)
-    if len(lines.rows) > 1:
-        delimiter = "," if "delimiter: ','" in text else " "
-        rows = lines.split(delimiter, keep_empty=True)
-        check_ragged(path, rows[0][1], rows[1:], delimiter)
+def _ecsv(path: Path, text: str, remarks: list[str]) -> Any:
+    """Read ECSV; one that astropy refuses cell by cell, so that one bad row spoils no other."""
+    try:
+        return _astropy(path, text, "ecsv")
+    except CatalogueError as error:
+        columns = _ecsv_columns(text)
+        if columns is None:
+            raise
+        table, _ = delimited(path, text, [])
+        if table.colnames != list(columns):
+            raise
+        remarks.append(str(error).removeprefix(f"{path}: ") + "; read as plain text instead")
+    for name, column in columns.items():
+        table[name].unit = column.get("unit")
+        table[name].description = column.get("description")
+    return table
+
+
+def _ecsv_columns(text: str) -> dict[str, Any] | None:
+    """Return the columns that the header of an ECSV file describes, if it can be read."""
+    from astropy.table import meta
+
+    lines = [line[2:] for line in text.splitlines() if line.startswith("# ")]
+    try:
+        header = meta.get_header_from_yaml(lines[1:])
+        return {column["name"]: column for column in header["datatype"]}
+    except (meta.YamlParseError, KeyError, TypeError):
+        return None
