@@ -6,11 +6,12 @@ from pathlib import Path
 from typing import Any
 
 from starkiln.errors import CatalogueError
+from starkiln.observations._cells import numbers_of, texts_of
 from starkiln.observations._files import Source, open_source
 from starkiln.observations._layout import lay_out
 from starkiln.observations._plan import Column, Layout
 from starkiln.observations._propose import propose_sheet
-from starkiln.observations._rows import build_rows, numbers_of
+from starkiln.observations._rows import build_rows
 from starkiln.observations._sheet import Sheet, read_sheet
 from starkiln.observations._star import BadRow, Star
 
@@ -105,9 +106,9 @@ class Catalogue:
         if not self._layout.name:
             return []
         places: dict[str, list[int]] = {}
-        for row, name in enumerate(self._source.cells(self._layout.name, 0, len(self)), 1):
-            places.setdefault(str(name), []).append(row)
-        twice = {name: rows for name, rows in places.items() if len(rows) > 1}
+        for row, name in enumerate(texts_of(self._source, self._layout.name, 0, len(self)), 1):
+            places.setdefault(name, []).append(row)
+        twice = {name: rows for name, rows in places.items() if name and len(rows) > 1}
         if not twice:
             return []
         name, rows = next(iter(twice.items()))

@@ -204,8 +204,7 @@ def _flux_error(reading: Reading, value: float, error: float, relative: bool) ->
 
 
 def _saturation(reading: Reading, found: Measurement) -> Measurement | str:
-    band = load_band(reading.band)
-    limit, widening = band.saturation_mag, band.saturation_error_mag
+    limit, widening = _saturates(reading.band)
     if reading.saturated == "keep" or limit is None or found.flux_w_m3 <= 0.0:
         return found
     magnitude = -2.5 * math.log10(found.flux_w_m3 / _zero_flux(reading.band, ""))
@@ -228,6 +227,12 @@ def zero_flux(reading: Reading) -> float:
         The band has no zero point in that system.
     """
     return _zero_flux(reading.band, reading.system or reading.unit.system)
+
+
+@lru_cache(maxsize=512)
+def _saturates(band: str) -> tuple[float | None, float | None]:
+    found = load_band(band)
+    return found.saturation_mag, found.saturation_error_mag
 
 
 @lru_cache(maxsize=512)

@@ -6,11 +6,11 @@ import math
 from dataclasses import dataclass, field
 
 from starkiln.errors import InputError
+from starkiln.observations._cells import numbers_of
 from starkiln.observations._files import Source
 from starkiln.observations._measure import BRIGHTEST, FAINTEST
 from starkiln.observations._plan import LEFT_OUT, UNUSABLE, Cells, Column, Layout
 from starkiln.observations._quantities import BY_NAME, QUANTITIES
-from starkiln.observations._rows import numbers_of
 from starkiln.observations._sheet import Sheet
 from starkiln.observations._trade import Guess, guess
 from starkiln.observations._units_of_columns import parse_unit

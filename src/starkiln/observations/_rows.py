@@ -2,26 +2,23 @@
 
 from __future__ import annotations
 
-import math
-from typing import Any
-
-import numpy as np
-
 from starkiln.errors import InputError
+from starkiln.observations._cells import (
+    LIMIT_SIGNS,
+    Number,
+    flags_of,
+    numbers_of,
+    parse_number,
+    texts_of,
+)
 from starkiln.observations._files import Source
 from starkiln.observations._from_python import check_value
 from starkiln.observations._measure import MAG_TO_LN, Measurement, check_error, measure
-from starkiln.observations._plan import BandColumn, Cells, KnownColumn, Layout
+from starkiln.observations._plan import BandColumn, KnownColumn, Layout
 from starkiln.observations._sheet import Sheet
 from starkiln.observations._star import BadRow, Star
 
-__all__ = ["build_rows", "numbers_of"]
-
-#: Cells of text that hold nothing, in lower case.
-_NOTHING = frozenset({"", "nan", "null", "none", "na", "n/a", "-", "--", "---", "...", "masked"})
-_FLAGS = {"<": "<", ">": ">", "<=": "<", ">=": ">", "\u2264": "<", "\u2265": ">"}
-
-Number = float | None | str  # a text is one that is no number
+__all__ = ["build_rows"]
 
 
 def build_rows(
@@ -30,11 +27,11 @@ def build_rows(
     """Return the stars of rows `start` to `stop` (from 0, `stop` left out)."""
     numbers = {cells.heading: numbers_of(source, cells, start, stop) for cells in layout.cells()}
     limits = {
-        band.limit.heading: _flags(source, band.limit, start, stop)
+        band.limit.heading: flags_of(source, band.limit, start, stop)
         for band in layout.bands
         if band.limit
     }
-    names = _texts(source, layout.name, start, stop) if layout.name else [""] * (stop - start)
+    names = texts_of(source, layout.name, start, stop) if layout.name else [""] * (stop - start)
     return [
         _Row(source, layout, sheet, rv, start + i + 1, names[i]).build(
             {h: column[i] for h, column in numbers.items()},
@@ -174,9 +171,9 @@ def _flagged(number: Number, decimal_comma: bool) -> tuple[str, float | None]:
     """Split `<12.3` into its flag and its number."""
     if isinstance(number, str):
         text = number.lstrip("<>=\u2264\u2265")
-        flag = _FLAGS.get(number[: len(number) - len(text)].strip())
+        flag = LIMIT_SIGNS.get(number[: len(number) - len(text)].strip())
         if flag:
-            value = _parse(text.strip(), decimal_comma)
+            value = parse_number(text.strip(), decimal_comma)
             if isinstance(value, float):
                 return flag, value
     return "", _plain(number)
@@ -185,7 +182,7 @@ def _flagged(number: Number, decimal_comma: bool) -> tuple[str, float | None]:
 def _one_flag(inside: str, text: str, heading: str) -> str:
     if not text:
         return inside
-    flag = _FLAGS.get(text)
+    flag = LIMIT_SIGNS.get(text)
     if flag is None:
         raise InputError(
             f"the limit flag '{text}' of column '{heading}' is neither '<' nor '>'; leave it "
@@ -203,64 +200,3 @@ def _plain(number: Number) -> float | None:
             f'missing = ["{number}"]'
         )
     return number
-
-
-def numbers_of(source: Source, cells: Cells, start: int, stop: int) -> list[Number]:
-    """Return the numbers of a column: None where nothing stands, a text where no number does."""
-    column = source.cells(cells.heading, start, stop)
-    column = getattr(column, "value", column) if hasattr(column, "to_value") else column
-    data = np.ma.asarray(column)
-    codes = [float(item) for item in cells.missing if _is_number(item)]
-    if data.dtype.kind in "fiub":
-        values = np.ma.filled(data.astype(float), math.nan).tolist()
-        return [None if _is_code(value, codes) else value for value in values]
-    words = _words(cells)
-    texts = ["" if cell is np.ma.masked else _text(cell) for cell in data]
-    return [_number(text, words, codes, source.decimal_comma) for text in texts]
-
-
-def _number(text: str, words: set[str], codes: list[float], decimal_comma: bool) -> Number:
-    if text.casefold() in words:
-        return None
-    value = _parse(text, decimal_comma)
-    return None if isinstance(value, float) and _is_code(value, codes) else value
-
-
-def _parse(text: str, decimal_comma: bool) -> float | str:
-    plain = text.replace("\u2212", "-")
-    if decimal_comma and "." not in plain:
-        plain = plain.replace(",", ".")
-    try:
-        return float(plain) if "_" not in plain else text
-    except ValueError:
-        return text
-
-
-def _is_number(item: Any) -> bool:
-    return isinstance(item, int | float) or isinstance(_parse(str(item), False), float)
-
-
-def _is_code(value: float, codes: list[float]) -> bool:
-    # A code kept in single precision is not exactly the one that the sheet names.
-    return math.isnan(value) or any(math.isclose(value, code, rel_tol=1e-6) for code in codes)
-
-
-def _flags(source: Source, cells: Cells, start: int, stop: int) -> list[str]:
-    nothing = _words(cells)
-    texts = _texts(source, cells.heading, start, stop)
-    return ["" if text.casefold() in nothing else text for text in texts]
-
-
-def _words(cells: Cells) -> set[str]:
-    return {str(item).strip().casefold() for item in cells.missing} | _NOTHING
-
-
-def _texts(source: Source, heading: str, start: int, stop: int) -> list[str]:
-    data = source.cells(heading, start, stop)
-    return ["" if cell is np.ma.masked else _text(cell) for cell in data]
-
-
-def _text(cell: Any) -> str:
-    if isinstance(cell, bytes):
-        return cell.decode("utf-8", errors="replace").strip()
-    return str(cell).strip()
