@@ -11,7 +11,7 @@ import numpy as np
 
 from starkiln.store import FORMATS, table_bytes
 
-__all__ = ["PRINT_FORMATS", "add_format_option", "print_table", "table_text"]
+__all__ = ["PRINT_FORMATS", "add_format", "print_table", "table_text"]
 
 PRINT_FORMATS = ("text", *FORMATS)
 
@@ -19,7 +19,7 @@ PRINT_FORMATS = ("text", *FORMATS)
 _DIGITS = 6
 
 
-def add_format_option(parser: ArgumentParser) -> None:
+def add_format(parser: ArgumentParser) -> None:
     """Add `--format` to a command that prints a table."""
     parser.add_argument(
         "--format",

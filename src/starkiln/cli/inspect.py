@@ -7,7 +7,8 @@ from argparse import ArgumentParser, Namespace
 from collections import Counter
 from typing import Any
 
-from starkiln.cli._tables import add_format_option, print_table, table_text
+from starkiln.cli._options import add_catalogue
+from starkiln.cli._tables import add_format, print_table, table_text
 
 _CHUNK = 5000
 #: The most rows that are listed one by one.
@@ -45,11 +46,8 @@ found from its content. Exit code: 0, 2 the catalogue cannot be used, 3 some row
 def configure(parser: ArgumentParser) -> None:
     """Add the arguments of the command."""
     parser.epilog = _HELP
-    parser.add_argument("catalogue", metavar="CATALOGUE", help="a table with one row per star")
-    parser.add_argument(
-        "--columns", metavar="SHEET.toml", help="column sheet that says what headings mean"
-    )
-    add_format_option(parser)
+    add_catalogue(parser)
+    add_format(parser)
 
 
 def run(args: Namespace) -> int:
