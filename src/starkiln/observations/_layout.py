@@ -188,12 +188,11 @@ class _Reader:
         return Cells(heading, self.headings.binding(heading).missing + self.sheet.missing)
 
     def _unit_text(self, heading: str) -> str:
+        binding = self.headings.binding(heading)
         base, bracket = split_unit(heading)
-        return (
-            self.headings.binding(heading).unit
-            or self.source.unit(heading)
-            or (bracket if meaning_of(base) else "")
-        )
+        if not (meaning_of(base) or (binding.means and _is_unit(bracket))):
+            bracket = ""  # as in E(B-V)
+        return binding.unit or self.source.unit(heading) or bracket
 
     def _unit(self, heading: str, default: str) -> ColumnUnit:
         text = self._unit_text(heading) or default
@@ -203,6 +202,13 @@ class _Reader:
             return parse_unit(text)
         except InputError as error:
             raise InputError(f"{error}; {_unit_hint(heading, default)}") from error
+
+
+def _is_unit(text: str) -> bool:
+    try:
+        return bool(text and parse_unit(text).text)
+    except InputError:
+        return False
 
 
 def _unit_hint(heading: str, unit: str) -> str:

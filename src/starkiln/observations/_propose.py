@@ -8,6 +8,7 @@ from dataclasses import dataclass, field
 from starkiln.errors import InputError
 from starkiln.observations._cells import numbers_of
 from starkiln.observations._files import Source
+from starkiln.observations._headings import heading_key, split_unit
 from starkiln.observations._measure import BRIGHTEST, FAINTEST
 from starkiln.observations._plan import LEFT_OUT, UNUSABLE, Cells, Column, Layout
 from starkiln.observations._quantities import BY_NAME, QUANTITIES
@@ -22,7 +23,7 @@ _CODES = (-999.0, -9999.0, -99.0, -99.9, -99.99, -99.999, 999.0, 9999.0, 99.99, 
 _ROWS = 20000
 #: How the heading of an error is made from that of its value, beside the ways that
 #: `guess` knows.
-_GLUED = ("e{}", "err{}", "sig{}", "d{}", "s{}", "{}e", "{}err", "e_{}", "{}_e")
+_GLUED = ("e{}", "err{}", "sig{}", "sigma{}", "unc{}", "d{}", "s{}", "{}e", "{}err", "{}sig")
 
 _HEAD = (
     "# A proposal, made from the headings alone: check every line, save it as a file such as\n"
@@ -92,7 +93,7 @@ def _propose_errors(draft: _Draft, source: Source, layout: Layout) -> None:
     for column in layout.known:
         heading = column.value.heading
         if column.error is None and column.constant is None and column.known.error != "none":
-            error = _glued(heading, source.headings)
+            error = _glued(heading, "", source.headings)
             if error:
                 draft.lines.append(f"{_quoted(heading)} = {{ error = {_quoted(error)} }}")
 
@@ -113,10 +114,12 @@ def _propose_one(
         doubts.append("if it is the star's own and not the whole line of sight's")
     if found.unit:
         entries.append(f"unit = {_quoted(found.unit)}")
-    elif found.flux and not source.unit(heading):
+    elif found.flux and not _unit_text(source, heading):
         keep = False
         entries.append('unit = "Jy"')
         doubts.append("say the unit")
+    if found.system:
+        entries.append(f"system = {_quoted(found.system)}")
     entry, doubt, sure = _error_entry(heading, found, guesses, source.headings)
     entries += [entry] if entry else []
     doubts += [doubt] if doubt else []
@@ -126,7 +129,7 @@ def _propose_one(
     draft.lines.append(f"{'' if keep else '# '}{line}{comment}")
     draft.taken.add(means)
     draft.headings.append(heading)
-    if means not in BY_NAME and not found.flux:
+    if means not in BY_NAME and not found.flux and not _unit_text(source, heading):
         draft.magnitudes.append(heading)
 
 
@@ -134,12 +137,12 @@ def _error_entry(
     heading: str, found: Guess, guesses: dict[str, Guess], headings: list[str]
 ) -> tuple[str, str, bool]:
     """Return the sheet's entry for the error, a doubt, and whether it needs no choice."""
-    if error := _glued(heading, headings):
+    if error := _glued(heading, found.stem, headings):
         return f"error = {_quoted(error)}", "", True
     for role in ("error", "signal_to_noise"):
         for other, also in guesses.items():
-            same = also.meanings[0] == found.meanings[0] and also.flux == found.flux
-            if also.role == role and same:
+            same = set(also.meanings) & set(found.meanings)
+            if also.role == role and same and (found.flux or not also.flux):
                 return f"{role} = {_quoted(other)}", "", True
     if found.meanings[0] in BY_NAME:
         needed = BY_NAME[found.meanings[0]].error == "required"
@@ -147,22 +150,28 @@ def _error_entry(
     return "error = 0.02", "no column of errors was found: say an honest one", True
 
 
-def _glued(heading: str, headings: list[str]) -> str:
-    patterns = {pattern.format(heading.casefold()) for pattern in _GLUED}
-    return next((other for other in headings if other.casefold() in patterns), "")
+def _glued(heading: str, stem: str, headings: list[str]) -> str:
+    bases = {heading_key(heading), heading_key(split_unit(heading)[0]), heading_key(stem)} - {""}
+    patterns = {pattern.format(base) for pattern in _GLUED for base in bases}
+    return next((other for other in headings if heading_key(other) in patterns), "")
+
+
+def _unit_text(source: Source, heading: str) -> str:
+    return source.unit(heading) or split_unit(heading)[1]
 
 
 def _fits(source: Source, heading: str, found: Guess) -> bool:
     """Whether a column holds numbers of a kind that the guess allows."""
     if getattr(source.table[heading], "ndim", 1) != 1:
         return False
+    text = _unit_text(source, heading)
     try:
-        unit = parse_unit(source.unit(heading)) if source.unit(heading) else None
+        unit = parse_unit(text) if text else None
     except InputError:
-        return False
+        unit = None
     if found.meanings[0] not in BY_NAME and unit is not None:
-        wanted = ("per wavelength", "per frequency") if found.flux else ("mag",)
-        if unit.kind not in wanted:
+        kinds = ("mag", "per wavelength", "per frequency")
+        if unit.kind not in (kinds[1:] if found.flux else kinds):
             return False
     numbers = numbers_of(source, Cells(heading), 0, _ROWS)
     return any(isinstance(number, float) for number in numbers)

@@ -60,6 +60,7 @@ _ERROR_WORDS = {
     "e", "err", "error", "errs", "sig", "sigma", "msigcom", "cmsig", "msig", "sigmpro", "merr",
     "magerr", "unc", "uncertainty", "std",
 }  # fmt: skip
+_SCALES = {"ab": "AB", "vega": "Vega"}
 _RATIO_WORDS = {"snr", "sn", "over"}
 _FLUX_WORDS = {"flux", "f", "fnu", "flam"}
 
@@ -112,12 +113,18 @@ class Guess:
         Whether the heading speaks of a flux, whose unit must then be known.
     unit : str
         Unit that the heading ends with, as in `parallax_mas`.
+    system : str
+        Magnitude system that the heading names, as in `J_AB`.
+    stem : str
+        The word of the heading that names the band or the quantity.
     """
 
     role: str
     meanings: tuple[str, ...]
     flux: bool = False
     unit: str = ""
+    system: str = ""
+    stem: str = ""
 
     def text(self) -> str:
         """Return it in words, such as `the error of 2MASS J`."""
@@ -134,7 +141,9 @@ def guess(heading: str) -> Guess | None:
     error = any(word in _ERROR_WORDS for word in folded)
     ratio = any(word in _RATIO_WORDS for word in folded)
     flux = any(word in _FLUX_WORDS for word in folded) and not ratio
+    system = next((_SCALES[word] for word in folded if word in _SCALES), "")
     dull = _MAGNITUDE_WORDS | _NOISE_WORDS | _ERROR_WORDS | _RATIO_WORDS | _FLUX_WORDS
+    dull |= _SCALES.keys()
     # M_G is an absolute magnitude, g_m an apparent one.
     rest = [word for word in words if word.casefold() not in dull or word == "M"]
     named = bool(set(folded) & (dull - {"mean"}))
@@ -145,18 +154,18 @@ def guess(heading: str) -> Guess | None:
     if not bands or not (named or len(words) == 1 or len(rest) > 1):
         return None
     role = "signal_to_noise" if ratio else "error" if error else "value"
-    return Guess(role, bands, flux)
+    return Guess(role, bands, flux, system=system, stem=rest[0])
 
 
 def _quantity(heading: str) -> Guess | None:
     quantity = _QUANTITIES.get(re.sub(r"[^a-z]", "", heading.casefold()))
     if quantity:
-        return Guess("value", (quantity,))
+        return Guess("value", (quantity,), stem=heading)
     stem, _, tail = heading.rpartition("_")
     unit = _UNITS.get(tail.casefold())
     meaning = meaning_of(stem)
     if unit and meaning and meaning.target in BY_NAME:
-        return Guess(meaning.role, (meaning.target,), unit=unit)
+        return Guess(meaning.role, (meaning.target,), unit=unit, stem=stem)
     return None
 
 
@@ -165,6 +174,7 @@ def _words(heading: str) -> list[str]:
     text = re.sub(r"[\[(].*?[\])]", " ", heading)
     text = re.sub(r"(?i)(psfmag|modelmag|mag)(err)?", r" \1 \2 ", text)
     text = re.sub(r"(?i)(?<![a-z0-9])(w[1-4])(mpro|sigmpro|snr|flux)", r"\1 \2", text)
+    text = re.sub(r"(?i)(?<=[a-z0-9])(err|error|unc)(?![a-z])", r" \1 ", text)
     text = re.sub(r"(?i)2m(?:ass)?(?![a-z])", " 2mass ", text)
     text = re.sub(r"(?<=[a-z])(?=[A-Z][a-z])|(?<=[a-z])(?=PSF)", " ", text)
     return [word for word in re.split(r"[^A-Za-z0-9]+", text) if word]
