@@ -85,6 +85,12 @@ class Headings:
             meaning = self._meaning(heading)
             if heading in left_out or (meaning and meaning.target in left_out):
                 self.layout.mark(heading, remark=LEFT_OUT)
+            elif meaning is None and heading in self._bound:
+                self.layout.mark(heading, remark=UNUSABLE)
+                self.layout.errors.append(
+                    f"{self.sheet.path}: [columns] '{heading}' does not say what it means; add "
+                    'means = "2MASS J", or what it is'
+                )
             elif meaning is None:
                 self._unknown(heading)
             elif meaning.role == "name":

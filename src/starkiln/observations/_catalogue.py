@@ -11,6 +11,7 @@ from starkiln.observations._files import Source, open_source
 from starkiln.observations._layout import lay_out
 from starkiln.observations._plan import Column, Layout
 from starkiln.observations._propose import propose_sheet
+from starkiln.observations._quantities import RV_MEAN
 from starkiln.observations._rows import build_rows
 from starkiln.observations._sheet import Sheet, read_sheet
 from starkiln.observations._star import BadRow, Star
@@ -121,7 +122,7 @@ class Catalogue:
 
 
 def survey_catalogue(
-    path: str | Path, *, columns: str | Path | None = None, rv: float = 3.1
+    path: str | Path, *, columns: str | Path | None = None, rv: float = RV_MEAN
 ) -> Catalogue:
     """Open a catalogue like `read_catalogue`, but keep what is wrong in `errors`."""
     sheet = read_sheet(columns)
@@ -130,7 +131,7 @@ def survey_catalogue(
 
 
 def read_catalogue(
-    path: str | Path, *, columns: str | Path | None = None, rv: float = 3.1
+    path: str | Path, *, columns: str | Path | None = None, rv: float = RV_MEAN
 ) -> Catalogue:
     """Open a catalogue and understand its columns.
 

@@ -94,6 +94,10 @@ class _Reader:
     def band(self, band: str, heading: str) -> None:
         binding = self.headings.binding(heading)
         unit = self._unit(heading, "mag")
+        if unit.kind != "mag" and binding.system:
+            raise InputError(f"a flux density in {unit.text} has no magnitude system; take it away")
+        if binding.error and binding.signal_to_noise:
+            raise InputError("the column sheet gives both an error and a signal to noise")
         if unit.kind not in _PHOTOMETRY:
             raise InputError(
                 f"unit '{unit.text}' is neither a magnitude nor a flux density; "
@@ -148,13 +152,19 @@ class _Reader:
                 f"its error, column '{error}', has unit '{unit.text}' where the value has "
                 f"'{column.reading.unit.text}'; {_unit_hint(error, column.reading.unit.text)}"
             )
+        self.headings.binding(error).refuse(
+            beyond=("means", "unit", "missing"), what=f"an error, column '{error}'"
+        )
         self.layout.mark(error, f"error of {band}", unit.text, used=True)
         return replace(
             column, reading=replace(column.reading, error_unit=unit), error=self._cells(error)
         )
 
     def known(self, known: Known, heading: str) -> None:
-        constant = self.headings.binding(heading).error
+        binding = self.headings.binding(heading)
+        keys = ("means", "unit", "missing") + (("error",) if known.error != "none" else ())
+        binding.refuse(beyond=keys, what=f"a {known.name}")
+        constant = binding.error
         unit = self._unit(heading, known.unit)
         factor = factor_to(unit, known.unit)
         column = KnownColumn(known, self._cells(heading), factor)

@@ -24,7 +24,7 @@ __all__ = [
 #: d ln F / d m.
 MAG_TO_LN = 0.4 * math.log(10.0)
 #: What may be done with a band brighter than its detector's limit.
-SATURATED = ("default", "widen", "drop", "keep")
+SATURATED = ("widen", "drop", "keep")
 
 # A number outside is no magnitude of a star (the Sun has -27) but a code.
 BRIGHTEST, FAINTEST = -30.0, 45.0
@@ -88,8 +88,8 @@ class Reading:
     floor : float
         The smallest error: mag for a magnitude, a fraction for a flux; 0 for none.
     saturated : str
-        One of `SATURATED`. `default` widens the error by what the band's table
-        gives, and drops the band where the table gives nothing.
+        One of `SATURATED`. `widen` adds to the error what the band's table gives,
+        and drops the band where the table gives nothing.
     """
 
     band: str
@@ -98,7 +98,7 @@ class Reading:
     system: str = ""
     limit_sigma: float = 3.0
     floor: float = 0.0
-    saturated: str = "default"
+    saturated: str = "widen"
 
 
 def measure(

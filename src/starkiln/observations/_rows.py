@@ -15,6 +15,7 @@ from starkiln.observations._files import Source
 from starkiln.observations._from_python import check_value
 from starkiln.observations._measure import MAG_TO_LN, Measurement, check_error, measure
 from starkiln.observations._plan import BandColumn, KnownColumn, Layout
+from starkiln.observations._quantities import av_from_ebv
 from starkiln.observations._sheet import Sheet
 from starkiln.observations._star import BadRow, Star
 
@@ -61,7 +62,8 @@ class _Row:
         for column in self.layout.known:
             values |= self._known(column, numbers)
         self._one_distance(values)
-        values |= self._dust(values)
+        if remark := av_from_ebv(values, self.rv):
+            self.remarks.append(remark)
         if not self.problems and all(m.limit for m in measurements):
             why = [f"{band}: {reason}" for band, reason in self.left_out]
             if measurements:
@@ -139,16 +141,6 @@ class _Row:
         other = "distance_pc" if chosen == "parallax" else "parallax_mas"
         values.pop(other)
         values.pop(f"e_{other}")
-
-    def _dust(self, values: dict[str, float]) -> dict[str, float]:
-        if "ebv" not in values or "av" in values:
-            return {}
-        ratio = values.get("rv", self.rv)
-        self.remarks.append(f"av is {ratio:g} E(B-V)")
-        dust = {"av": ratio * values["ebv"]}
-        if "e_ebv" in values:
-            dust["e_av"] = ratio * values["e_ebv"]
-        return dust
 
 
 def _error(band: BandColumn, numbers: dict[str, Number]) -> float | None:

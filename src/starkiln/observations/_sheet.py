@@ -60,6 +60,20 @@ class Binding:
     without_error: str = ""
     missing: tuple[Any, ...] = ()
 
+    def refuse(self, *, beyond: tuple[str, ...], what: str) -> None:
+        """Refuse keys that say nothing of such a column.
+
+        Raises
+        ------
+        InputError
+            A key stands that is not one of `beyond`.
+        """
+        for item in fields(self):
+            if getattr(self, item.name) != item.default and item.name not in beyond:
+                raise InputError(
+                    f"the column sheet's key '{item.name}' says nothing of {what}; take it away"
+                )
+
 
 @dataclass(frozen=True)
 class Sheet:
@@ -83,7 +97,7 @@ class Sheet:
     distance_from : str
         `parallax` or `distance`: which counts in a row that has both.
     saturated : str
-        One of `default`, `widen`, `drop`, `keep`.
+        One of `widen`, `drop`, `keep`.
     without_error : str
         A magnitude or flux whose cell of the error is empty: `leave out` (by
         default), or `limit`, an upper limit of flux.
@@ -96,7 +110,7 @@ class Sheet:
     floor: float = 0.0
     limit_sigma: float = 3.0
     distance_from: str = ""
-    saturated: str = "default"
+    saturated: str = "widen"
     without_error: str = "leave out"
 
     def checksum(self) -> str:
@@ -150,7 +164,7 @@ def _sheet(content: dict[str, Any], path: str) -> Sheet:
         floor=_number(content.get("floor", 0.0), "floor", zero=True),
         limit_sigma=_number(content.get("limit_sigma", 3.0), "limit_sigma"),
         distance_from=_choice(content, "distance_from", ("parallax", "distance"), ""),
-        saturated=_choice(content, "saturated", SATURATED, "default"),
+        saturated=_choice(content, "saturated", SATURATED, "widen"),
         without_error=_choice(content, "without_error", _BARE, "leave out"),
     )
 

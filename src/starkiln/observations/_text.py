@@ -85,7 +85,8 @@ def _astropy(path: Path, text: str, style: str) -> Any:
     with warnings.catch_warnings():
         warnings.simplefilter("ignore")
         try:
-            return Table.read(re.split(r"\r\n|\r|\n", text), format=f"ascii.{style}")
+            lines = re.split(r"\r\n|\r|\n", text.rstrip())
+            return Table.read(lines, format=f"ascii.{style}")
         except Exception as error:  # its readers raise many kinds
             first = (str(error).strip() or type(error).__name__).splitlines()[0]
             raise CatalogueError(

@@ -18,6 +18,8 @@ _MAGNITUDES = {
     "magnitudes": "",
     "abmag": "AB",
     "magab": "AB",
+    "stmag": "ST",
+    "magst": "ST",
     "vegamag": "Vega",
     "magvega": "Vega",
 }
@@ -36,11 +38,12 @@ class ColumnUnit:
         Normal spelling, in which astropy reads it.
     kind : str
         `mag` (a magnitude), `per wavelength`, `per frequency` (flux densities),
-        `dex` (a decimal logarithm) or `other`.
+        `dex` (decimal logarithm of a gravity in cgs or of a ratio), `logarithm` (of
+        anything else) or `other`.
     factor : float
         One of it in mag, W m-3 or Jy, for the first three kinds; else 1.
     system : str
-        `AB` or `Vega` where the unit says so, else empty.
+        `AB`, `ST` or `Vega` where the unit says so, else empty.
     """
 
     text: str
@@ -92,7 +95,7 @@ def factor_to(unit: ColumnUnit, target: str) -> float:
     if target == "dex":
         if unit.kind == "dex" or unit.text == "":
             return 1.0
-    else:
+    elif unit.kind not in ("dex", "logarithm"):
         try:
             return float(u.Unit(unit.text).to(u.Unit(target or "")))
         except (u.UnitConversionError, TypeError):
@@ -124,12 +127,10 @@ def _classify(unit: Any, text: str) -> ColumnUnit:
     from astropy import units as u
 
     if isinstance(unit, u.MagUnit):
-        if unit == u.ABmag:
-            return ColumnUnit("mag", "mag", system="AB")
-        raise InputError(f"unit '{text}' is a magnitude of a scale that is neither Vega nor AB")
+        raise InputError(f"unit '{text}' is a magnitude of a scale that is not Vega, AB or ST")
     if isinstance(unit, u.function.logarithmic.LogUnit):
-        solar = unit.physical_unit in (u.one, u.cm / u.s**2)
-        return ColumnUnit("dex" if solar else str(unit), "dex" if solar else "other")
+        gravity_or_ratio = unit.physical_unit in (u.one, u.cm / u.s**2)
+        return ColumnUnit(str(unit), "dex" if gravity_or_ratio else "logarithm")
     if unit.is_equivalent(u.mag):
         return ColumnUnit(str(unit), "mag", factor=float(unit.to(u.mag)))
     if u.A in getattr(unit, "bases", ()):
