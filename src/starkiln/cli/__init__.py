@@ -17,6 +17,7 @@ from starkiln.errors import StarkilnError
 
 #: Command -> (module, what it does in one line).
 COMMANDS: dict[str, tuple[str, str]] = {
+    "inspect": ("starkiln.cli.inspect", "what a catalogue holds, what is unusable, and why"),
     "fit": ("starkiln.cli.fit", "fit a catalogue: temperatures, diameters, radii, luminosities"),
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
 }

@@ -7,8 +7,8 @@ hand. Every measurement is kept as band mean of the flux per wavelength.
 
 from starkiln.observations._catalogue import Catalogue, read_catalogue, survey_catalogue
 from starkiln.observations._columns import read_columns
-from starkiln.observations._layout import Column
 from starkiln.observations._measure import Measurement
+from starkiln.observations._plan import Column
 from starkiln.observations._sheet import Sheet, read_sheet
 from starkiln.observations._star import BadRow, Star
 

@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
-from hashlib import sha256
 from pathlib import Path
 from typing import Any
 
 from starkiln.errors import CatalogueError
+from starkiln.observations._cells import numbers_of, texts_of
 from starkiln.observations._files import Source, open_source
-from starkiln.observations._layout import Column, Layout, lay_out
+from starkiln.observations._layout import lay_out
+from starkiln.observations._plan import Column, Layout
+from starkiln.observations._propose import propose_sheet
+from starkiln.observations._quantities import RV_MEAN
 from starkiln.observations._rows import build_rows
 from starkiln.observations._sheet import Sheet, read_sheet
 from starkiln.observations._star import BadRow, Star
@@ -50,7 +53,7 @@ class Catalogue:
     @property
     def sheet_checksum(self) -> str:
         """SHA-256 of what the column sheet says."""
-        return sha256(repr(self._sheet).encode()).hexdigest()
+        return self._sheet.checksum()
 
     def has(self, meaning: str) -> bool:
         """Whether a column of that meaning, such as `parallax`, is in use."""
@@ -87,13 +90,26 @@ class Catalogue:
         begin, end, _ = slice(start, stop).indices(len(self))
         return build_rows(self._source, self._layout, self._sheet, begin, end, self._rv)
 
+    def filled(self) -> dict[str, int]:
+        """Return, for each column of numbers in use, how many cells hold something."""
+        return {
+            cells.heading: sum(
+                number is not None for number in numbers_of(self._source, cells, 0, len(self))
+            )
+            for cells in self._layout.cells()
+        }
+
+    def proposal(self) -> str:
+        """Return a column sheet for headings that look useful and are not understood."""
+        return propose_sheet(self._source, self._layout, self._sheet)
+
     def _same_names(self) -> list[str]:
         if not self._layout.name:
             return []
         places: dict[str, list[int]] = {}
-        for row, name in enumerate(self._source.cells(self._layout.name, 0, len(self)), 1):
-            places.setdefault(str(name), []).append(row)
-        twice = {name: rows for name, rows in places.items() if len(rows) > 1}
+        for row, name in enumerate(texts_of(self._source, self._layout.name, 0, len(self)), 1):
+            places.setdefault(name, []).append(row)
+        twice = {name: rows for name, rows in places.items() if name and len(rows) > 1}
         if not twice:
             return []
         name, rows = next(iter(twice.items()))
@@ -106,7 +122,7 @@ class Catalogue:
 
 
 def survey_catalogue(
-    path: str | Path, *, columns: str | Path | None = None, rv: float = 3.1
+    path: str | Path, *, columns: str | Path | None = None, rv: float = RV_MEAN
 ) -> Catalogue:
     """Open a catalogue like `read_catalogue`, but keep what is wrong in `errors`."""
     sheet = read_sheet(columns)
@@ -115,7 +131,7 @@ def survey_catalogue(
 
 
 def read_catalogue(
-    path: str | Path, *, columns: str | Path | None = None, rv: float = 3.1
+    path: str | Path, *, columns: str | Path | None = None, rv: float = RV_MEAN
 ) -> Catalogue:
     """Open a catalogue and understand its columns.
 

@@ -2,15 +2,17 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping, Sequence
-from difflib import get_close_matches
 from pathlib import Path
 from typing import Any
 
-import numpy as np
-
-from starkiln.errors import CatalogueError
+from starkiln.errors import CatalogueError, InputError
+from starkiln.observations._cells import numbers_of, texts_of
 from starkiln.observations._files import Source, open_source
+from starkiln.observations._from_python import nearest
+from starkiln.observations._plan import Cells
+from starkiln.observations._units_of_columns import factor_to, parse_unit
 
 __all__ = ["read_columns"]
 
@@ -45,46 +47,29 @@ def read_columns(
     headings = {heading.strip().lower(): heading for heading in source.headings}
     for name in required:
         if name not in headings:
-            close = get_close_matches(name, list(headings), n=2)
+            close = nearest(name, headings, 2)
             hint = f"; nearest: {', '.join(close)}" if close else ""
             raise CatalogueError(f"{source.path}: no column '{name}'{hint}")
     found = {name: headings[name] for name in units if name in headings}
     return {
-        name: _texts(source, heading) if name == "name" else _numbers(source, heading, units[name])
+        name: texts_of(source, heading, 0, len(source))
+        if name == "name"
+        else _numbers(source, heading, units[name])
         for name, heading in found.items()
     }
 
 
-def _texts(source: Source, heading: str) -> list[str]:
-    return [str(cell).strip() for cell in source.cells(heading, 0, len(source))]
-
-
 def _numbers(source: Source, heading: str, unit: str) -> list[float]:
-    factor = _factor(source, heading, unit)
-    values = []
-    for row, cell in enumerate(source.cells(heading, 0, len(source)), 1):
-        text = "" if cell is np.ma.masked else str(cell).strip()
-        if source.decimal_comma:
-            text = text.replace(",", ".")
-        try:
-            values.append(float(text) * factor if text else np.nan)
-        except ValueError:
-            raise CatalogueError(
-                f"{source.path}, row {row}, column {heading}: '{text}' is not a number"
-            ) from None
-    return values
-
-
-def _factor(source: Source, heading: str, unit: str) -> float:
-    given = source.unit(heading)
-    if not given or given == unit:
-        return 1.0
-    from astropy import units as u
-
     try:
-        return float(u.Unit(given).to(u.Unit(unit)))
-    except (ValueError, u.UnitConversionError):
-        wanted = f"'{unit}' or a unit that converts to it" if unit else "no unit"
-        raise CatalogueError(
-            f"{source.path}, column {heading}: unit '{given}' is not {wanted}"
-        ) from None
+        given = source.unit(heading)
+        factor = factor_to(parse_unit(given), unit) if given else 1.0
+    except InputError as error:
+        raise CatalogueError(f"{source.path}, column '{heading}': {error}") from error
+    values = []
+    for row, number in enumerate(numbers_of(source, Cells(heading), 0, len(source)), 1):
+        if isinstance(number, str):
+            raise CatalogueError(
+                f"{source.path}, row {row}, column '{heading}': '{number}' is not a number"
+            )
+        values.append(math.nan if number is None else number * factor)
+    return values

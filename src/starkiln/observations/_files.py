@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import gzip
 import hashlib
+import io
 import warnings
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -85,13 +86,13 @@ def open_source(path: str | Path) -> Source:
             raw = gzip.decompress(raw)
         except (OSError, EOFError) as error:
             raise CatalogueError(f"{path}: the gzip file is damaged: {error}") from error
-    head = raw[:4096].lstrip(b"\xef\xbb\xbf \t\r\n")
     if not raw.strip():
         raise CatalogueError(f"{path}: the file is empty; give a catalogue with one row per star")
-    if head.startswith(b"SIMPLE  ="):
-        source = Source(path, "FITS", _fits(path), checksum)
+    remarks: list[str] = []
+    if raw.startswith(b"SIMPLE  ="):
+        source = Source(path, "FITS", _fits(path, raw, remarks), checksum, remarks=remarks)
     elif b"<VOTABLE" in raw[:4096]:
-        source = Source(path, "VOTable", _votable(path, raw), checksum)
+        source = Source(path, "VOTable", _votable(path, raw, remarks), checksum, remarks=remarks)
     else:
         _refuse_binary(path, raw)
         found = read_text_table(path, raw)
@@ -120,42 +121,41 @@ def _refuse_binary(path: Path, raw: bytes) -> None:
         raise CatalogueError(f"{path} is not a table that can be read; give {_FORMATS}")
 
 
-def _fits(path: Path) -> Any:
+def _fits(path: Path, raw: bytes, remarks: list[str]) -> Any:
     from astropy.io import fits
     from astropy.table import Table
 
     try:
-        with warnings.catch_warnings():
+        with warnings.catch_warnings(), fits.open(io.BytesIO(raw)) as hdus:
             warnings.simplefilter("ignore")
-            with fits.open(path) as hdus:
-                tables = [
-                    i
-                    for i, hdu in enumerate(hdus)
-                    if isinstance(hdu, fits.BinTableHDU | fits.TableHDU)
-                ]
-                if not tables:
-                    raise CatalogueError(f"{path}: the FITS file holds no table, only images")
-                table = Table.read(hdus, hdu=tables[0], format="fits")
-                table.convert_bytestring_to_unicode()
-    except (OSError, ValueError, TypeError, KeyError) as error:
-        if isinstance(error, CatalogueError):
-            raise
+            kinds = (fits.BinTableHDU, fits.TableHDU)
+            tables = [place for place, hdu in enumerate(hdus) if isinstance(hdu, kinds)]
+            if not tables:
+                raise CatalogueError(f"{path}: the FITS file holds no table, only images")
+            if len(tables) > 1:
+                remarks.append(f"the file holds {len(tables)} tables; the first is read")
+            table = Table.read(hdus, hdu=tables[0], format="fits")
+            table.convert_bytestring_to_unicode()
+    except CatalogueError:
+        raise
+    except Exception as error:  # a damaged file raises many kinds
         raise CatalogueError(
             f"{path}: the FITS table cannot be read: {_first_line(error)}"
         ) from error
     return table
 
 
-def _votable(path: Path, raw: bytes) -> Any:
-    import io
-
+def _votable(path: Path, raw: bytes, remarks: list[str]) -> Any:
     from astropy.io.votable import parse
 
     try:
         with warnings.catch_warnings():
             warnings.simplefilter("ignore")
-            first = parse(io.BytesIO(raw)).get_first_table()
-            return first.to_table(use_names_over_ids=True)
+            document = parse(io.BytesIO(raw))
+            count = sum(1 for table in document.iter_tables() if len(table.fields))
+            if count > 1:
+                remarks.append(f"the file holds {count} tables; the first is read")
+            return document.get_first_table().to_table(use_names_over_ids=True)
     except Exception as error:  # the parser raises what its XML library raises
         raise CatalogueError(f"{path}: the VOTable cannot be read: {_first_line(error)}") from error
 

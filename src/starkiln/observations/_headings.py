@@ -34,7 +34,9 @@ NAME_HEADINGS = (
     "target",
     "id",
 )
-_OTHER_NAMES = {"plx": "parallax", "dist": "distance"}
+_OTHER_NAMES = {"plx": "parallax"}
+#: Archives call the colours G - RP and G - BP so, observers the magnitudes.
+_AMBIGUOUS = ("grp", "gbp")
 _ERROR_HEADS = ("e_", "err_", "error_", "sigma_", "sig_", "unc_")
 _ERROR_TAILS = ("_error", "_err", "_sigma", "_unc", "_uncertainty")
 _LIMIT_HEADS = ("l_",)
@@ -111,21 +113,34 @@ def split_unit(heading: str) -> tuple[str, str]:
     return match[1], match[2] or match[3]
 
 
-def looks_like_band(heading: str) -> list[str]:
-    """Return the nearest bands for a heading that looks like one and is none."""
-    base = _error_base(heading.strip()) or re.sub(r"^l_", "", heading.strip(), flags=re.I)
-    key = heading_key(base)
+def looks_like_band(heading: str) -> tuple[str, list[str]]:
+    """Return what a heading means that looks like a band's and is none.
+
+    Returns
+    -------
+    str, list of str
+        `e_`, `l_` or nothing, and the nearest bands, none if it looks like no band.
+    """
+    text = heading.strip()
+    base = _error_base(text)
+    head = "e_" if base else "l_" if text[:2].casefold() == "l_" else ""
+    return head, _near_bands(heading_key(base or text.removeprefix(head)))
+
+
+def _near_bands(key: str) -> list[str]:
     names = {heading_key(name): name for name in band_names()}
-    near = [names[heading_key(name)] for name in nearest(key, names, 3)]
+    near = [names[word] for word in nearest(key, names, 3)]
     system = next((word for word in _SYSTEM_WORDS if key.startswith(word)), None)
-    if system is not None and 1 <= len(key) - len(system) <= 2:
-        return near or list(band_names()[:3])
+    if system is not None:
+        # `Gaia X` and `WISE W5` are meant as bands, `gaia_id` and `WISE_ra` are not.
+        rest = key.removeprefix(system)
+        return near if re.fullmatch(r"[a-z]|[a-z][0-9]|[bgr]p|k[a-z]", rest) else []
     return [n for n in near if len(key) >= 5 and _distance(key, heading_key(n)) <= 1]
 
 
 def _target(text: str) -> str:
     key = heading_key(text)
-    if not key:
+    if not key or key in _AMBIGUOUS:
         return ""
     key = _OTHER_NAMES.get(key, key)
     if key in BY_NAME and key != "ebv":

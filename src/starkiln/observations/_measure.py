@@ -10,15 +10,24 @@ from starkiln.errors import InputError
 from starkiln.observations._units_of_columns import ColumnUnit
 from starkiln.passbands import flux_from, load_band
 
-__all__ = ["SATURATED", "Measurement", "Reading", "check_error", "measure"]
+__all__ = [
+    "BRIGHTEST",
+    "FAINTEST",
+    "SATURATED",
+    "Measurement",
+    "Reading",
+    "check_error",
+    "measure",
+    "zero_flux",
+]
 
 #: d ln F / d m.
 MAG_TO_LN = 0.4 * math.log(10.0)
 #: What may be done with a band brighter than its detector's limit.
-SATURATED = ("default", "widen", "drop", "keep")
+SATURATED = ("widen", "drop", "keep")
 
 # A number outside is no magnitude of a star (the Sun has -27) but a code.
-_BRIGHTEST, _FAINTEST = -30.0, 45.0
+BRIGHTEST, FAINTEST = -30.0, 45.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -77,11 +86,10 @@ class Reading:
     limit_sigma : float
         At how many sigma a limit is.
     floor : float
-        The smallest error: mag for a magnitude, a fraction for a flux. It also
-        stands in for an error that is not given; 0 for none.
+        The smallest error: mag for a magnitude, a fraction for a flux; 0 for none.
     saturated : str
-        One of `SATURATED`. `default` widens the error by what the band's table
-        gives, and drops the band where the table gives nothing.
+        One of `SATURATED`. `widen` adds to the error what the band's table gives,
+        and drops the band where the table gives nothing.
     """
 
     band: str
@@ -90,7 +98,7 @@ class Reading:
     system: str = ""
     limit_sigma: float = 3.0
     floor: float = 0.0
-    saturated: str = "default"
+    saturated: str = "widen"
 
 
 def measure(
@@ -102,6 +110,8 @@ def measure(
     relative: bool = False,
 ) -> Measurement | str:
     """Turn one printed number into a `Measurement`.
+
+    A limit stands at its flux, with the error that flux over `limit_sigma`.
 
     Parameters
     ----------
@@ -127,14 +137,14 @@ def measure(
     _check_value(reading, value, limit)
     if limit:
         return _limit(reading, value, limit)
-    if check_error(reading, error) is None and not reading.floor:
+    if error is None:
         return "no error is given"
+    check_error(reading, error)
     magnitude = reading.unit.kind == "mag"
     flux = _flux(reading, value)
     if magnitude:
         unit = reading.error_unit or reading.unit
-        given = 0.0 if error is None else error * (1.0 if relative else unit.factor)
-        fraction = MAG_TO_LN * max(given, reading.floor)
+        fraction = MAG_TO_LN * max(error * (1.0 if relative else unit.factor), reading.floor)
         width = fraction * flux
     else:
         width = _flux_error(reading, value, error, relative)
@@ -142,10 +152,10 @@ def measure(
     return _saturation(reading, Measurement(reading.band, flux, width, fraction))
 
 
-def check_error(reading: Reading, error: float | None) -> float | None:
-    """Return an error as it is, or refuse it."""
-    if error is None or (math.isfinite(error) and error > 0.0):
-        return error
+def check_error(reading: Reading, error: float) -> None:
+    """Refuse an error that is not above zero."""
+    if math.isfinite(error) and error > 0.0:
+        return
     unit = (reading.error_unit or reading.unit).text
     raise InputError(
         f"error {error:g} {unit} is not above zero and finite; leave the cell empty where it is "
@@ -158,10 +168,10 @@ def _check_value(reading: Reading, value: float, limit: str) -> None:
     kind = "magnitude" if unit.kind == "mag" else "flux"
     if not math.isfinite(value):
         raise InputError(f"an infinite {kind} is no measurement; leave the cell empty")
-    if kind == "magnitude" and not _BRIGHTEST <= value * unit.factor <= _FAINTEST:
+    if kind == "magnitude" and not BRIGHTEST <= value * unit.factor <= FAINTEST:
         raise InputError(
-            f"{value:g} {unit.text} is no magnitude of a star ({_BRIGHTEST:g} to "
-            f"{_FAINTEST:g} mag); if it means missing, say so in a column sheet: "
+            f"{value:g} {unit.text} is no magnitude of a star ({BRIGHTEST:g} to "
+            f"{FAINTEST:g} mag); if it means missing, say so in a column sheet: "
             f"missing = [{value:g}]"
         )
     if kind == "flux" and limit and value <= 0.0:
@@ -179,20 +189,14 @@ def _limit(reading: Reading, value: float, flag: str) -> Measurement:
 def _flux(reading: Reading, value: float) -> float:
     unit = reading.unit
     if unit.kind == "mag":
-        return _zero_flux(reading.band, reading.system or unit.system) * 10.0 ** (
-            -0.4 * value * unit.factor
-        )
+        return zero_flux(reading) * 10.0 ** (-0.4 * value * unit.factor)
     return _unit_flux(reading.band, unit) * value
 
 
-def _flux_error(reading: Reading, value: float, error: float | None, relative: bool) -> float:
-    one = _unit_flux(reading.band, reading.unit)
-    scale = abs(value) * one
-    width = 0.0
-    if error is not None:
-        width = error * (
-            scale if relative else _unit_flux(reading.band, reading.error_unit or reading.unit)
-        )
+def _flux_error(reading: Reading, value: float, error: float, relative: bool) -> float:
+    scale = abs(value) * _unit_flux(reading.band, reading.unit)
+    unit = reading.error_unit or reading.unit
+    width = error * (scale if relative else _unit_flux(reading.band, unit))
     width = max(width, reading.floor * scale)
     if width <= 0.0:
         raise InputError("a flux of zero needs an error in its own unit")
@@ -200,8 +204,7 @@ def _flux_error(reading: Reading, value: float, error: float | None, relative: b
 
 
 def _saturation(reading: Reading, found: Measurement) -> Measurement | str:
-    band = load_band(reading.band)
-    limit, widening = band.saturation_mag, band.saturation_error_mag
+    limit, widening = _saturates(reading.band)
     if reading.saturated == "keep" or limit is None or found.flux_w_m3 <= 0.0:
         return found
     magnitude = -2.5 * math.log10(found.flux_w_m3 / _zero_flux(reading.band, ""))
@@ -213,6 +216,23 @@ def _saturation(reading: Reading, found: Measurement) -> Measurement | str:
     fraction = math.hypot(found.fractional_error, MAG_TO_LN * widening)
     note = f"{where}, error widened by {widening:g} mag" if widening else f"{where}, error kept"
     return Measurement(found.band, found.flux_w_m3, fraction * found.flux_w_m3, fraction, note=note)
+
+
+def zero_flux(reading: Reading) -> float:
+    """Return the flux of magnitude 0 in the system of `reading`, in W m-3.
+
+    Raises
+    ------
+    BandError
+        The band has no zero point in that system.
+    """
+    return _zero_flux(reading.band, reading.system or reading.unit.system)
+
+
+@lru_cache(maxsize=512)
+def _saturates(band: str) -> tuple[float | None, float | None]:
+    found = load_band(band)
+    return found.saturation_mag, found.saturation_error_mag
 
 
 @lru_cache(maxsize=512)

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-__all__ = ["BY_NAME", "QUANTITIES", "Known"]
+__all__ = ["BY_NAME", "QUANTITIES", "RV_MEAN", "Known", "av_from_ebv"]
 
 
 @dataclass(frozen=True)
@@ -56,4 +56,31 @@ QUANTITIES = (
     Known("luminosity", "solLum", "luminosity_lsun", "luminosity", 0.0, 1e9, strict=True),
 )
 
+#: R_V with which E(B-V) turns into A_V where nothing else is said: the mean of the
+#: diffuse Milky Way (Cardelli, Clayton & Mathis 1989, ApJ 345, 245).
+RV_MEAN = 3.1
+
 BY_NAME = {known.name: known for known in QUANTITIES}
+
+
+def av_from_ebv(values: dict[str, float], rv: float) -> str:
+    """Add A_V = R_V E(B-V) to the values of a star that has E(B-V) and no A_V.
+
+    Parameters
+    ----------
+    values : dict
+        Attributes of a star; its own `rv` goes before the argument.
+    rv : float
+
+    Returns
+    -------
+    str
+        What was done; empty for nothing.
+    """
+    if "ebv" not in values or "av" in values:
+        return ""
+    ratio = values.get("rv", rv)
+    values["av"] = ratio * values["ebv"]
+    if "e_ebv" in values:
+        values["e_av"] = ratio * values["e_ebv"]
+    return f"av is {ratio:g} E(B-V)"

@@ -2,38 +2,37 @@
 
 from __future__ import annotations
 
-import math
-from typing import Any
-
-import numpy as np
-
 from starkiln.errors import InputError
+from starkiln.observations._cells import (
+    LIMIT_SIGNS,
+    Number,
+    flags_of,
+    numbers_of,
+    parse_number,
+    texts_of,
+)
 from starkiln.observations._files import Source
 from starkiln.observations._from_python import check_value
-from starkiln.observations._layout import BandColumn, Cells, KnownColumn, Layout
 from starkiln.observations._measure import MAG_TO_LN, Measurement, check_error, measure
+from starkiln.observations._plan import BandColumn, KnownColumn, Layout
+from starkiln.observations._quantities import av_from_ebv
 from starkiln.observations._sheet import Sheet
 from starkiln.observations._star import BadRow, Star
 
-__all__ = ["build_rows", "missing_mask", "name_of"]
-
-#: Cells of text that hold nothing, in lower case.
-_NOTHING = frozenset({"", "nan", "null", "none", "na", "n/a", "-", "--", "---", "...", "masked"})
-_FLAGS = {"<": "<", ">": ">", "<=": "<", ">=": ">", "\u2264": "<", "\u2265": ">"}
-
-Number = float | None | str  # a text is one that is no number
+__all__ = ["build_rows"]
 
 
 def build_rows(
     source: Source, layout: Layout, sheet: Sheet, start: int, stop: int, rv: float
 ) -> list[Star | BadRow]:
     """Return the stars of rows `start` to `stop` (from 0, `stop` left out)."""
-    needed = {cells.heading: cells for cells in _all_cells(layout)}
-    numbers = {h: _numbers(source, cells, start, stop) for h, cells in needed.items()}
+    numbers = {cells.heading: numbers_of(source, cells, start, stop) for cells in layout.cells()}
     limits = {
-        band.limit: _texts(source, band.limit, start, stop) for band in layout.bands if band.limit
+        band.limit.heading: flags_of(source, band.limit, start, stop)
+        for band in layout.bands
+        if band.limit
     }
-    names = _texts(source, layout.name, start, stop) if layout.name else [""] * (stop - start)
+    names = texts_of(source, layout.name, start, stop) if layout.name else [""] * (stop - start)
     return [
         _Row(source, layout, sheet, rv, start + i + 1, names[i]).build(
             {h: column[i] for h, column in numbers.items()},
@@ -41,16 +40,6 @@ def build_rows(
         )
         for i in range(len(names))
     ]
-
-
-def name_of(text: str, row: int) -> str:
-    """Return the name to show for a star."""
-    return text or f"row {row}"
-
-
-def missing_mask(source: Source, cells: Cells, start: int, stop: int) -> list[bool]:
-    """Return which cells hold nothing."""
-    return [number is None for number in _numbers(source, cells, start, stop)]
 
 
 class _Row:
@@ -73,13 +62,14 @@ class _Row:
         for column in self.layout.known:
             values |= self._known(column, numbers)
         self._one_distance(values)
-        values |= self._dust(values)
+        if remark := av_from_ebv(values, self.rv):
+            self.remarks.append(remark)
         if not self.problems and all(m.limit for m in measurements):
             why = [f"{band}: {reason}" for band, reason in self.left_out]
             if measurements:
                 why.append("only limits are given")
             self.problems.append(f"no band can be used: {'; '.join(why) or 'all are empty'}")
-        name = name_of(self.name, self.row)
+        name = self.name or f"row {self.row}"
         if self.problems:
             where = f"{self.source.path.name}, row {self.row}"
             return BadRow(name, self.row, f"{where}, {'; '.join(self.problems)}")
@@ -101,11 +91,14 @@ class _Row:
             flag, value = _flagged(numbers[heading], self.source.decimal_comma)
             if value is None:
                 return None
-            flag = _one_flag(flag, limits.get(band.limit, ""), band.limit)
+            if band.limit:
+                flag = _one_flag(flag, limits[band.limit.heading], band.limit.heading)
             if band.error:
                 heading = band.error.heading
             error = None if flag else _error(band, numbers)
             heading = band.value.heading
+            if error is None and not flag and band.bare_is_limit:
+                flag = ">" if band.reading.unit.kind == "mag" else "<"
             outcome = measure(band.reading, value, error, flag, relative=band.error is None)
         except InputError as problem:
             self.problems.append(f"column '{heading}': {problem}")
@@ -140,37 +133,22 @@ class _Row:
         chosen = self.sheet.distance_from
         if not chosen:
             self.problems.append(
-                "both a parallax and a distance are given; choose in a column sheet: "
-                'distance_from = "parallax" (or "distance")'
+                f"column 'distance': {values['distance_pc']:g} pc is given beside a parallax of "
+                f"{values['parallax_mas']:g} mas; choose in a column sheet: distance_from = "
+                '"parallax" (or "distance")'
             )
             return
         other = "distance_pc" if chosen == "parallax" else "parallax_mas"
         values.pop(other)
         values.pop(f"e_{other}")
 
-    def _dust(self, values: dict[str, float]) -> dict[str, float]:
-        if "ebv" not in values or "av" in values:
-            return {}
-        ratio = values.get("rv", self.rv)
-        self.remarks.append(f"av is {ratio:g} E(B-V)")
-        dust = {"av": ratio * values["ebv"]}
-        if "e_ebv" in values:
-            dust["e_av"] = ratio * values["e_ebv"]
-        return dust
-
-
-def _all_cells(layout: Layout) -> list[Cells]:
-    cells = []
-    for band in layout.bands:
-        cells += [band.value, band.error, band.signal_to_noise]
-    for known in layout.known:
-        cells += [known.value, known.error]
-    return [cell for cell in cells if cell is not None]
-
 
 def _error(band: BandColumn, numbers: dict[str, Number]) -> float | None:
     if band.error is not None:
-        return check_error(band.reading, _plain(numbers[band.error.heading]))
+        error = _plain(numbers[band.error.heading])
+        if error is not None:
+            check_error(band.reading, error)
+        return error
     if band.signal_to_noise is None:
         return band.constant
     ratio = _plain(numbers[band.signal_to_noise.heading])
@@ -185,20 +163,23 @@ def _flagged(number: Number, decimal_comma: bool) -> tuple[str, float | None]:
     """Split `<12.3` into its flag and its number."""
     if isinstance(number, str):
         text = number.lstrip("<>=\u2264\u2265")
-        flag = _FLAGS.get(number[: len(number) - len(text)].strip())
+        flag = LIMIT_SIGNS.get(number[: len(number) - len(text)].strip())
         if flag:
-            value = _parse(text.strip(), decimal_comma)
+            value = parse_number(text.strip(), decimal_comma)
             if isinstance(value, float):
                 return flag, value
     return "", _plain(number)
 
 
 def _one_flag(inside: str, text: str, heading: str) -> str:
-    if text.casefold() in _NOTHING:
+    if not text:
         return inside
-    flag = _FLAGS.get(text)
+    flag = LIMIT_SIGNS.get(text)
     if flag is None:
-        raise InputError(f"the limit flag '{text}' of column '{heading}' is neither '<' nor '>'")
+        raise InputError(
+            f"the limit flag '{text}' of column '{heading}' is neither '<' nor '>'; leave it "
+            "empty for a measured value"
+        )
     if inside and inside != flag:
         raise InputError(f"'{inside}' stands before the number and '{flag}' in '{heading}'")
     return flag
@@ -211,53 +192,3 @@ def _plain(number: Number) -> float | None:
             f'missing = ["{number}"]'
         )
     return number
-
-
-def _numbers(source: Source, cells: Cells, start: int, stop: int) -> list[Number]:
-    column = source.cells(cells.heading, start, stop)
-    column = getattr(column, "value", column) if hasattr(column, "to_value") else column
-    data = np.ma.asarray(column)
-    codes = [float(item) for item in cells.missing if _is_number(item)]
-    if data.dtype.kind in "fiub":
-        values = np.ma.filled(data.astype(float), math.nan).tolist()
-        return [None if _is_code(value, codes) else value for value in values]
-    words = {str(item).strip().casefold() for item in cells.missing} | _NOTHING
-    texts = ["" if cell is np.ma.masked else _text(cell) for cell in data]
-    return [_number(text, words, codes, source.decimal_comma) for text in texts]
-
-
-def _number(text: str, words: set[str], codes: list[float], decimal_comma: bool) -> Number:
-    if text.casefold() in words:
-        return None
-    value = _parse(text, decimal_comma)
-    return None if isinstance(value, float) and _is_code(value, codes) else value
-
-
-def _parse(text: str, decimal_comma: bool) -> float | str:
-    plain = text.replace("\u2212", "-")
-    if decimal_comma and "." not in plain:
-        plain = plain.replace(",", ".")
-    try:
-        return float(plain) if "_" not in plain else text
-    except ValueError:
-        return text
-
-
-def _is_number(item: Any) -> bool:
-    return isinstance(item, int | float) or isinstance(_parse(str(item), False), float)
-
-
-def _is_code(value: float, codes: list[float]) -> bool:
-    # A code kept in single precision is not exactly the one that the sheet names.
-    return math.isnan(value) or any(math.isclose(value, code, rel_tol=1e-6) for code in codes)
-
-
-def _texts(source: Source, heading: str, start: int, stop: int) -> list[str]:
-    data = source.cells(heading, start, stop)
-    return ["" if cell is np.ma.masked else _text(cell) for cell in data]
-
-
-def _text(cell: Any) -> str:
-    if isinstance(cell, bytes):
-        return cell.decode("utf-8", errors="replace").strip()
-    return str(cell).strip()

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import tomllib
-from dataclasses import dataclass, field, fields
+from dataclasses import dataclass, field, fields, replace
+from hashlib import sha256
 from pathlib import Path
 from typing import Any
 
@@ -17,6 +18,7 @@ from starkiln.passbands import band_names, match_band
 
 __all__ = ["Binding", "Sheet", "read_sheet"]
 
+_BARE = ("leave out", "limit")
 _SYSTEMS = {"vega": "Vega", "ab": "AB", "st": "ST"}
 
 
@@ -40,6 +42,8 @@ class Binding:
         None for the sheet's.
     saturated : str
         Empty for the sheet's.
+    without_error : str
+        Empty for the sheet's.
     missing : tuple
         Values that mean missing here, beside the sheet's.
     """
@@ -53,7 +57,22 @@ class Binding:
     floor: float | None = None
     limit_sigma: float | None = None
     saturated: str = ""
+    without_error: str = ""
     missing: tuple[Any, ...] = ()
+
+    def refuse(self, *, beyond: tuple[str, ...], what: str) -> None:
+        """Refuse keys that say nothing of such a column.
+
+        Raises
+        ------
+        InputError
+            A key stands that is not one of `beyond`.
+        """
+        for item in fields(self):
+            if getattr(self, item.name) != item.default and item.name not in beyond:
+                raise InputError(
+                    f"the column sheet's key '{item.name}' says nothing of {what}; take it away"
+                )
 
 
 @dataclass(frozen=True)
@@ -71,13 +90,17 @@ class Sheet:
     missing : tuple
         Numbers or texts that mean missing in every column.
     floor : float
-        The smallest error of every band: mag, or a fraction of a flux.
+        The smallest error of every band, and the error of a band that has no
+        column of errors: mag, or a fraction of a flux.
     limit_sigma : float
         At how many sigma limits are.
     distance_from : str
         `parallax` or `distance`: which counts in a row that has both.
     saturated : str
-        One of `default`, `widen`, `drop`, `keep`.
+        One of `widen`, `drop`, `keep`.
+    without_error : str
+        A magnitude or flux whose cell of the error is empty: `leave out` (by
+        default), or `limit`, an upper limit of flux.
     """
 
     path: str = ""
@@ -87,7 +110,12 @@ class Sheet:
     floor: float = 0.0
     limit_sigma: float = 3.0
     distance_from: str = ""
-    saturated: str = "default"
+    saturated: str = "widen"
+    without_error: str = "leave out"
+
+    def checksum(self) -> str:
+        """SHA-256 of what it says, wherever it stands."""
+        return sha256(repr(replace(self, path="")).encode()).hexdigest()
 
 
 _TOP = [f.name for f in fields(Sheet) if f.name != "path"]
@@ -136,7 +164,8 @@ def _sheet(content: dict[str, Any], path: str) -> Sheet:
         floor=_number(content.get("floor", 0.0), "floor", zero=True),
         limit_sigma=_number(content.get("limit_sigma", 3.0), "limit_sigma"),
         distance_from=_choice(content, "distance_from", ("parallax", "distance"), ""),
-        saturated=_choice(content, "saturated", SATURATED, "default"),
+        saturated=_choice(content, "saturated", SATURATED, "widen"),
+        without_error=_choice(content, "without_error", _BARE, "leave out"),
     )
 
 
@@ -167,6 +196,7 @@ def _binding(heading: str, entry: Any) -> Binding:
         floor=None if floor is None else _number(floor, f"{where}: floor", zero=True),
         limit_sigma=None if sigma is None else _number(sigma, f"{where}: limit_sigma"),
         saturated=_choice(entry, "saturated", SATURATED, "", where),
+        without_error=_choice(entry, "without_error", _BARE, "", where),
         missing=_missing(entry.get("missing", []), f"{where}: missing"),
     )
 

@@ -12,7 +12,7 @@ from typing import Any
 from starkiln.errors import InputError
 from starkiln.observations._from_python import known_values, read_photometry
 from starkiln.observations._measure import Measurement
-from starkiln.observations._quantities import QUANTITIES
+from starkiln.observations._quantities import QUANTITIES, RV_MEAN, av_from_ebv
 from starkiln.passbands import band_names
 
 __all__ = ["BadRow", "Star"]
@@ -53,15 +53,17 @@ class Star:
         numbers are magnitudes in the band's own system.
     limit_sigma : float
         At how many sigma limits are.
-    saturated : {"default", "widen", "drop", "keep"}
-        What to do with a band brighter than its detector's limit; by default its
-        error is widened, or it is dropped, as the band's table says.
+    saturated : {"widen", "drop", "keep"}
+        What to do with a band brighter than its detector's limit: widen its error
+        by what the band's table gives (and drop it where the table gives nothing),
+        drop it, or keep it as it is.
     **known
         `parallax` (mas), `distance` (pc), `av` (mag, at 0.55 um), `ebv` (mag),
         `rv`, `logg` (dex of cm s-2), `feh` (dex), `teff` (K), `mass`, `radius`,
         `luminosity` (solar): each `(value, error)` or a value alone, Quantities or
         bare numbers in the unit given here. Parallax and distance need an error,
-        and only one of the two may be given.
+        and only one of the two may be given. E(B-V) turns into `av` with `rv`, or
+        with 3.1.
 
     Raises
     ------
@@ -110,7 +112,7 @@ class Star:
         photometry: Mapping[str, Any],
         *,
         limit_sigma: float = 3.0,
-        saturated: str = "default",
+        saturated: str = "widen",
         **known: Any,
     ) -> None:
         label = f"star {name!r}"
@@ -118,7 +120,9 @@ class Star:
             photometry, label, limit_sigma=limit_sigma, saturated=saturated
         )
         values = known_values(known, label)
-        self._fill(str(name), measurements, left_out=left_out, **values)
+        remark = av_from_ebv(values, RV_MEAN)
+        remarks = (remark,) if remark else ()
+        self._fill(str(name), measurements, left_out=left_out, remarks=remarks, **values)
         if all(m.limit for m in self.measurements):
             why = "; ".join(self.notes) or "no measured flux was given"
             raise InputError(f"{label}: no band is left: {why}")

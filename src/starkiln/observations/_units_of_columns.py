@@ -18,11 +18,14 @@ _MAGNITUDES = {
     "magnitudes": "",
     "abmag": "AB",
     "magab": "AB",
+    "stmag": "ST",
+    "magst": "ST",
     "vegamag": "Vega",
     "magvega": "Vega",
 }
 _SPELLINGS = {"jy": "Jy", "jansky": "Jy", "janskys": "Jy", "kelvin": "K", "degk": "K"}
-_DEX = ("dex", "log(", "[cm/s2]", "[-]", "[sun]", "[cm.s**-2]")
+#: How archives write the unit of log g and of [Fe/H].
+_DEX = ("dex", "log", "[cm/s2]", "[-]", "[sun]")
 
 
 @dataclass(frozen=True)
@@ -35,11 +38,12 @@ class ColumnUnit:
         Normal spelling, in which astropy reads it.
     kind : str
         `mag` (a magnitude), `per wavelength`, `per frequency` (flux densities),
-        `dex` (a decimal logarithm) or `other`.
+        `dex` (decimal logarithm of a gravity in cgs or of a ratio), `logarithm` (of
+        anything else) or `other`.
     factor : float
         One of it in mag, W m-3 or Jy, for the first three kinds; else 1.
     system : str
-        `AB` or `Vega` where the unit says so, else empty.
+        `AB`, `ST` or `Vega` where the unit says so, else empty.
     """
 
     text: str
@@ -73,7 +77,7 @@ def parse_unit(text: str) -> ColumnUnit:
         bare = bare.replace(mark, "")
     if bare in _MAGNITUDES:
         return ColumnUnit("mag", "mag", system=_MAGNITUDES[bare])
-    if words.casefold().startswith(_DEX):
+    if words.casefold() == "dex" or words.casefold().startswith(_DEX[1:]):
         return ColumnUnit("dex", "dex")
     return _classify(_astropy_unit(_SPELLINGS.get(bare, words)), text)
 
@@ -91,7 +95,7 @@ def factor_to(unit: ColumnUnit, target: str) -> float:
     if target == "dex":
         if unit.kind == "dex" or unit.text == "":
             return 1.0
-    else:
+    elif unit.kind not in ("dex", "logarithm"):
         try:
             return float(u.Unit(unit.text).to(u.Unit(target or "")))
         except (u.UnitConversionError, TypeError):
@@ -123,9 +127,10 @@ def _classify(unit: Any, text: str) -> ColumnUnit:
     from astropy import units as u
 
     if isinstance(unit, u.MagUnit):
-        if unit == u.ABmag:
-            return ColumnUnit("mag", "mag", system="AB")
-        raise InputError(f"unit '{text}' is a magnitude of a scale that is neither Vega nor AB")
+        raise InputError(f"unit '{text}' is a magnitude of a scale that is not Vega, AB or ST")
+    if isinstance(unit, u.function.logarithmic.LogUnit):
+        gravity_or_ratio = unit.physical_unit in (u.one, u.cm / u.s**2)
+        return ColumnUnit(str(unit), "dex" if gravity_or_ratio else "logarithm")
     if unit.is_equivalent(u.mag):
         return ColumnUnit(str(unit), "mag", factor=float(unit.to(u.mag)))
     if u.A in getattr(unit, "bases", ()):
