@@ -146,7 +146,7 @@ class _BandFile:
             given = ", ".join(self.table.colnames)
             raise self.error(f"has no column '{name}' (its columns: {given})")
         try:
-            column = np.ma.asarray(self.table[found[0]], dtype=float)
+            column: Any = np.ma.asarray(self.table[found[0]], dtype=float)
             values: np.ndarray = np.ma.filled(column, np.nan)
         except (TypeError, ValueError) as error:
             raise self.error(f"the column '{name}' holds something that is no number") from error

@@ -59,7 +59,8 @@ def _load(name: str) -> Band:
     systems = read_data_table("passbands", "systems.ecsv")
     system = next(s for s in systems if s["system"] == row["system"])
     wavelength_m, response, step_m = _curve(str(system["curve_group"]), str(row["curve"]))
-    bare = Band(name, str(system["system"]), system["response"], wavelength_m, response, step_m)
+    kind: Any = str(system["response"])
+    bare = Band(name, str(system["system"]), kind, wavelength_m, response, step_m)
     vega = _optional(row["vega_zero_point"])
     return replace(
         bare,
