@@ -19,6 +19,8 @@ from starkiln.errors import StarkilnError
 COMMANDS: dict[str, tuple[str, str]] = {
     "fit": ("starkiln.cli.fit", "fit a catalogue: temperatures, diameters, radii, luminosities"),
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
+    "bands": ("starkiln.cli.bands", "what is known of passbands, with sources"),
+    "convert": ("starkiln.cli.convert", "photometry from one unit or band to another"),
 }
 
 _DESCRIPTION = (
