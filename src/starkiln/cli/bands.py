@@ -89,11 +89,13 @@ def _upright(table: Any) -> Any:
     """Turn a table of one row into one row per column, to read."""
     from astropy.table import Table
 
-    values = [table[name][0] for name in table.colnames]
-    texts = [
-        f"{v:.6g}" if table[n].dtype.kind == "f" and v == v else str(v)
-        for n, v in zip(table.colnames, values, strict=True)
-    ]
+    cells = [table[name][0] for name in table.colnames]
     units = ["" if table[name].unit is None else str(table[name].unit) for name in table.colnames]
-    shown = ["-" if text == "--" else text for text in texts]
-    return Table({"quantity": table.colnames, "value": shown, "unit": units})
+    texts = [_text(cell) for cell in cells]
+    return Table({"quantity": table.colnames, "unit": units, "value": texts})
+
+
+def _text(cell: Any) -> str:
+    if isinstance(cell, float):
+        return f"{cell:.6g}"
+    return "-" if str(cell) == "--" else str(cell)

@@ -58,7 +58,7 @@ def run(args: argparse.Namespace) -> int:
     result = _converted(args, value, error, unit)
     lost = int(((result.value != result.value) & (value == value)).sum())
     if lost and not args.column:
-        raise InputError(f"a flux of {args.value} is not positive and has no magnitude")
+        raise InputError(f"a flux of {value[0]:g} {unit} is not positive and has no magnitude")
     if lost:
         sys.stderr.write(
             f"starkiln convert: {lost} rows left empty: a flux that is not positive has no "
