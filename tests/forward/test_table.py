@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from pathlib import Path
+
 import numpy as np
 import pytest
 
@@ -26,10 +28,50 @@ def points(n: int, seed: int = 3) -> tuple[np.ndarray, np.ndarray]:
 
 @pytest.mark.parametrize("law", ["G23", "F99", "G03_SMCBar"])
 def test_table_agrees_with_integration(law: str) -> None:
-    dust, (x, av) = Dust(law=law), points(300)
+    dust, (x, av) = Dust(law=law), points(100)
     value = band_fluxes(EMITTER, band_names(), dust).ln_flux(x, av)
     direct = [band_flux_direct(EMITTER, band, dust, x, av) for band in band_names()]
     np.testing.assert_allclose(value, np.stack(direct, axis=1), rtol=0.0, atol=1e-6)
+
+
+@pytest.mark.parametrize("law", ["G23", "F99"])
+def test_free_rv(law: str) -> None:
+    bands = ("Gaia BP", "GALEX NUV", "2MASS Ks", "WISE W3")
+    low, high = Dust(law=law).rv_range
+    table = band_fluxes(EMITTER, bands, Dust(law=law), free_rv=True)
+    assert table.rv_range == (low, high)
+    x, av = points(60)
+    for rv in (low, 3.1, 4.321, high):
+        value, slope = table.ln_flux_and_slope(x, av, np.full(60, rv))
+        fixed = band_fluxes(EMITTER, bands, Dust(law=law, rv=rv))
+        direct = [band_flux_direct(EMITTER, b, Dust(law=law, rv=rv), x, av) for b in bands]
+        np.testing.assert_allclose(value, np.stack(direct, axis=1), rtol=0.0, atol=1e-5)
+        np.testing.assert_allclose(slope, fixed.ln_flux_and_slope(x, av)[1], rtol=0.0, atol=1e-4)
+    alone = table.ln_flux(x[7:8], av[7:8], np.array([high]))
+    np.testing.assert_array_equal(alone[0], value[7])
+
+
+def test_rv_is_wanted_or_not() -> None:
+    x, av = points(5)
+    with pytest.raises(InputError, match="this table has a fixed R_V"):
+        band_fluxes(EMITTER, ("Gaia G",), Dust()).ln_flux(x, av, av)
+    free = band_fluxes(EMITTER, ("Gaia G",), Dust(), free_rv=True)
+    with pytest.raises(InputError, match="this table has a free R_V"):
+        free.ln_flux(x, av)
+    with pytest.raises(InputError, match="R_V = 9 is outside the table"):
+        free.ln_flux(x, av, np.full(5, 9.0))
+    with pytest.raises(DustError, match="G03_SMCBar is a single average"):
+        band_fluxes(EMITTER, ("Gaia G",), Dust(law="G03_SMCBar"), free_rv=True)
+
+
+def test_a_band_of_the_users_own(tmp_path: Path) -> None:
+    text = "# response_kind: photon\n# magnitude_system: AB\n# wavelength_unit: um\n"
+    (tmp_path / "mine.csv").write_text(text + "wavelength,response\n0.5,0\n0.55,1\n0.6,0\n")
+    x, av = points(50)
+    table = band_fluxes(EMITTER, (str(tmp_path / "mine.csv"), load_band("Gaia G")), Dust())
+    assert table.bands == ("mine", "Gaia G")
+    direct = band_flux_direct(EMITTER, str(tmp_path / "mine.csv"), Dust(), x, av)
+    np.testing.assert_allclose(table.ln_flux(x, av)[:, 0], direct, rtol=0.0, atol=1e-6)
 
 
 def test_direct_integration_by_an_independent_rule() -> None:

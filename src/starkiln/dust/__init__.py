@@ -1,6 +1,5 @@
 """Extinction laws: the published ones, at the door of the dust_extinction package."""
 
-from starkiln.dust._dust import DEFAULT_LAW, Dust
-from starkiln.dust._laws import law_names
+from starkiln.dust._dust import DEFAULT_LAW, Dust, law_names
 
 __all__ = ["DEFAULT_LAW", "Dust", "law_names"]

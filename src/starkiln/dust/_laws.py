@@ -1,8 +1,7 @@
-"""Extinction laws by their published names, normalised at 0.55 um and continued."""
+"""Extinction laws evaluated: normalised at 0.55 um and continued beyond their end."""
 
 from __future__ import annotations
 
-import difflib
 import warnings
 from dataclasses import dataclass
 from functools import lru_cache
@@ -10,39 +9,16 @@ from typing import Any
 
 import numpy as np
 
+from starkiln.dust._catalogue import LawInfo, law_info
 from starkiln.errors import DustError
 
-__all__ = ["REFERENCE_M", "Law", "law_names", "load_law"]
+__all__ = ["REFERENCE_M", "Law", "load_law"]
 
 #: Where A_lambda / A is 1 by definition: `av` is the law's own A at 0.55 um.
 REFERENCE_M = 0.55e-6
 
 #: Share of wavelength over which a law's slope at its long end is measured.
 _SLOPE_SPAN = 0.02
-
-#: A law is continued as a power law only from the infrared, where extinction is one, and
-#: only if it falls there.
-_POWER_LAW_FROM_M = 3.0e-6
-
-#: Laws of the Milky Way, whose shape depends on R_V, and single averages.
-_WITH_RV = ("CCM89", "O94", "F99", "F04", "VCG04", "GCC09", "M14", "F19", "D22", "G23")
-_AVERAGES = (
-    "RL85_MWGC",
-    "RRP89_MWGC",
-    "B92_MWAvg",
-    "G03_SMCBar",
-    "G03_LMCAvg",
-    "G03_LMC2",
-    "I05_MWAvg",
-    "CT06_MWGC",
-    "CT06_MWLoc",
-    "GCC09_MWAvg",
-    "F11_MWGC",
-    "G21_MWAvg",
-    "D22_MWAvg",
-    "G24_SMCAvg",
-    "G24_SMCBumps",
-)
 
 
 @dataclass(frozen=True, eq=False)
@@ -51,90 +27,76 @@ class Law:
 
     Attributes
     ----------
-    name : str
-        Published name, as in dust_extinction.
-    short_m, long_m : float
-        The wavelengths that the law was published for.
+    info : LawInfo
+        Name and range.
+    model : dust_extinction model
+        The law itself.
+    scale : float
+        The law's A(0.55 um) over its A_V; 1 for a law that does not reach 0.55 um,
+        which keeps its published normalisation.
+    end_value, end_slope : float
+        A_lambda / A(0.55 um) and its slope d ln A / d ln wavelength at the long end.
     """
 
-    name: str
-    short_m: float
-    long_m: float
+    info: LawInfo
     model: Any
     scale: float
     end_value: float
     end_slope: float
 
-    @property
-    def continued(self) -> bool:
-        """Whether the law is continued beyond its long end."""
-        falls = self.end_value > 0.0 and self.end_slope < 0.0
-        return falls and self.long_m >= _POWER_LAW_FROM_M
-
     def curve(self, wavelength_m: np.ndarray) -> np.ndarray:
         """Return A_lambda over A(0.55 um); see `Dust.curve`."""
-        if np.any(wavelength_m < self.short_m):
-            raise DustError(
-                f"the law {self.name} starts at {self.short_m * 1e6:.4g} um and is asked for "
-                f"{float(wavelength_m.min()) * 1e6:.4g} um: choose a law that reaches it (G23 "
-                "starts at 0.0912 um) or leave the band out"
-            )
-        beyond = wavelength_m > self.long_m
-        if np.any(beyond) and not self.continued:
-            raise DustError(
-                f"the law {self.name} ends at {self.long_m * 1e6:.4g} um, where it is no power "
-                f"law, and is asked for {float(wavelength_m.max()) * 1e6:.4g} um: choose a law "
-                "that reaches it (G23 ends at 32 um) or leave the band out"
-            )
-        value = _evaluate(self.model, np.minimum(wavelength_m, self.long_m)) / self.scale
-        power = self.end_value * (wavelength_m[beyond] / self.long_m) ** self.end_slope
-        value[beyond] = power
+        self._check(wavelength_m)
+        long_m = self.info.long_um * 1e-6
+        value = _evaluate(self.model, np.minimum(wavelength_m, long_m)) / self.scale
+        beyond = wavelength_m > long_m
+        value[beyond] = self.end_value * (wavelength_m[beyond] / long_m) ** self.end_slope
         return value
 
-
-def law_names() -> tuple[str, ...]:
-    """Return the names of all laws."""
-    return _WITH_RV + _AVERAGES
+    def _check(self, wavelength_m: np.ndarray) -> None:
+        info = self.info
+        low_um, high_um = wavelength_m.min() * 1e6, wavelength_m.max() * 1e6
+        if low_um < info.short_um * (1.0 - 1e-12):
+            raise DustError(
+                f"the law {info.name} starts at {info.short_um:.4g} um and is asked for "
+                f"{low_um:.4g} um: choose a law that reaches it (G23 starts at 0.0912 um) or "
+                "leave the band out"
+            )
+        if high_um > info.long_um * (1.0 + 1e-12) and not info.continued:
+            raise DustError(
+                f"the law {info.name} ends at {info.long_um:.4g} um, where it is no power law, "
+                f"and is asked for {high_um:.4g} um: choose a law that reaches it (G23 ends at "
+                "32 um) or leave the band out"
+            )
 
 
 @lru_cache(maxsize=64)
-def load_law(name: str, rv: float) -> Law:
-    """Return the law of that name at that R_V.
+def load_law(name: str, rv: float, f_a: float = 1.0) -> Law:
+    """Return the law of that name at that R_V; `f_a` is the mixture of G16.
 
     Raises
     ------
     DustError
-        The name is unknown, or R_V is outside the law's range.
+        The name is unknown, R_V is outside the law's range, or the installed
+        dust_extinction is older than the law.
     """
-    if name not in law_names():
-        near = difflib.get_close_matches(name.upper(), law_names(), n=3, cutoff=0.4)
-        remedy = f"did you mean {' or '.join(near)}?" if near else f"use {', '.join(law_names())}"
-        raise DustError(f"unknown dust law '{name}': {remedy}")
+    info = law_info(name, rv)
     from dust_extinction import averages, parameter_averages
 
-    if name in _WITH_RV:
-        kind = getattr(parameter_averages, name)
-        low, high = kind.Rv_range
-        if not low <= rv <= high:
-            raise DustError(
-                f"R_V = {rv:g} is outside the law {name}: give a number between {low:g} and "
-                f"{high:g}"
-            )
-        model = kind(Rv=rv)
+    kind = getattr(parameter_averages, name, None) or getattr(averages, name, None)
+    if kind is None:
+        raise DustError(f"the law {name} needs a newer version of the dust_extinction package")
+    if name == "G16":
+        model = kind(RvA=rv, fA=f_a)
     else:
-        model = getattr(averages, name)()
-    return _normalised(name, model)
-
-
-def _normalised(name: str, model: Any) -> Law:
-    short_m, long_m = 1e-6 / model.x_range[1], 1e-6 / model.x_range[0]
-    # A law that does not reach 0.55 um keeps its published A_lambda / A_V.
-    covers = short_m <= REFERENCE_M <= long_m
+        model = kind(Rv=rv) if info.rv_range is not None else kind()
+    covers = info.short_um <= REFERENCE_M * 1e6 <= info.long_um
     scale = float(_evaluate(model, np.array([REFERENCE_M]))[0]) if covers else 1.0
-    near, end = _evaluate(model, np.array([long_m * (1.0 - _SLOPE_SPAN), long_m])) / scale
-    falls = 0.0 < end < near
-    slope = float(np.log(end / near) / -np.log1p(-_SLOPE_SPAN)) if falls else 0.0
-    return Law(name, short_m, long_m, model, scale, float(end), slope)
+    if not info.continued:
+        return Law(info, model, scale, 0.0, 0.0)
+    ends = info.long_um * 1e-6 * np.array([1.0 - _SLOPE_SPAN, 1.0])
+    near, end = _evaluate(model, ends) / scale
+    return Law(info, model, scale, float(end), float(np.log(near / end) / np.log1p(-_SLOPE_SPAN)))
 
 
 def _evaluate(model: Any, wavelength_m: np.ndarray) -> np.ndarray:

@@ -1,8 +1,8 @@
-"""Evaluation of the tabulated band fluxes on plain arrays; no astropy here.
+"""Chebyshev series of the tabulated band fluxes on plain arrays; no astropy here.
 
-Rounding: every product here has a fixed shape (the points are padded to whole
-blocks), so that the value of a point does not depend on how many others are
-evaluated with it or on its place among them.
+Rounding: every matrix product here has a fixed shape (the points are padded to whole
+blocks), so that the value of a point does not depend on how many others are evaluated
+with it or on its place among them.
 """
 
 from __future__ import annotations
@@ -11,13 +11,13 @@ from collections.abc import Iterator
 
 import numpy as np
 
-__all__ = ["chebyshev_fit", "chebyshev_nodes", "evaluate", "evaluate_slope"]
+__all__ = ["chebyshev_fit", "chebyshev_nodes", "contract", "evaluate", "evaluate_slope", "trimmed"]
 
 #: Points per product: small enough for the cache and a single star, large enough
 #: that the overhead per point vanishes.
 BLOCK = 64
-#: Blocks held in memory at once.
-_BLOCKS_AT_ONCE = 32
+#: Numbers held at once in the sums over the first axis.
+_WORKSPACE = 250_000
 
 
 def chebyshev_nodes(n: int) -> np.ndarray:
@@ -28,37 +28,46 @@ def chebyshev_nodes(n: int) -> np.ndarray:
 def chebyshev_fit(values: np.ndarray) -> np.ndarray:
     """Return the coefficients of the interpolant through values at Chebyshev points.
 
-    `values` has shape (n, m), on `chebyshev_nodes` along both axes (Press et al.
-    2007, Numerical Recipes, eq. 5.8.7, in two dimensions).
+    `values` stands on `chebyshev_nodes` along every axis (Press et al. 2007,
+    Numerical Recipes, eq. 5.8.7, along each axis in turn).
     """
-    return _transform(values.shape[0]) @ values @ _transform(values.shape[1]).T
+    for axis, n in enumerate(values.shape):
+        order = np.arange(n)
+        matrix = 2.0 / n * np.cos(np.pi * np.outer(order, order + 0.5) / n)
+        matrix[0] *= 0.5
+        values = np.moveaxis(np.tensordot(matrix, values, axes=(1, axis)), 0, axis)
+    return values
 
 
-def _transform(n: int) -> np.ndarray:
-    order = np.arange(n)
-    matrix = 2.0 / n * np.cos(np.pi * np.outer(order, order + 0.5) / n)
-    matrix[0] *= 0.5
-    return matrix
+def trimmed(coefficients: np.ndarray, tolerance: float) -> np.ndarray:
+    """Drop the trailing terms of each axis that add up to less than `tolerance`."""
+    for axis in range(coefficients.ndim):
+        others = tuple(k for k in range(coefficients.ndim) if k != axis)
+        size = np.abs(coefficients).sum(axis=others)
+        tail = np.cumsum(size[::-1])[::-1]
+        # The recurrences start from two terms.
+        keep = max(2, int(np.count_nonzero(tail > tolerance)))
+        coefficients = np.take(coefficients, np.arange(keep), axis=axis)
+    return np.ascontiguousarray(coefficients)
 
 
 def evaluate(coefficients: np.ndarray, t: np.ndarray, a: np.ndarray) -> np.ndarray:
-    """Sum the double Chebyshev series of every band.
+    """Sum a set of double Chebyshev series.
 
     Parameters
     ----------
-    coefficients : numpy.ndarray, shape (n_t, n_a, n_bands)
-        Coefficients, n_t and n_a at least 2.
+    coefficients : numpy.ndarray, shape (n_t, n_a, m)
+        Coefficients of m series, n_t and n_a at least 2.
     t, a : numpy.ndarray, shape (n,)
         Points, scaled to [-1, 1].
 
     Returns
     -------
-    numpy.ndarray, shape (n, n_bands)
+    numpy.ndarray, shape (n, m)
     """
     value = np.empty((t.size, coefficients.shape[2]))
     for part, series in _series(coefficients, t):
-        basis = _chebyshev(_padded(a[part]), coefficients.shape[1])
-        value[part] = _sum(basis, series, part)
+        value[part] = _sum(_chebyshev(_padded(a[part]), coefficients.shape[1]), series, part)
     return value
 
 
@@ -75,15 +84,21 @@ def evaluate_slope(
     return value, slope
 
 
+def contract(series: np.ndarray, r: np.ndarray, n_r: int) -> np.ndarray:
+    """Sum series of shape (n, n_r m) over their n_r terms at the points r, shape (n,)."""
+    basis = _chebyshev(r, n_r)
+    return np.einsum("nj,njb->nb", basis, series.reshape(r.size, n_r, -1))
+
+
 def _series(coefficients: np.ndarray, t: np.ndarray) -> Iterator[tuple[slice, np.ndarray]]:
     """Sum over the terms in t, some blocks of points at a time."""
-    n_t, n_a, n_bands = coefficients.shape
-    flat = coefficients.reshape(n_t, n_a * n_bands)
-    chunk = BLOCK * _BLOCKS_AT_ONCE
+    n_t, n_a, m = coefficients.shape
+    flat = coefficients.reshape(n_t, n_a * m)
+    chunk = BLOCK * max(1, _WORKSPACE // (BLOCK * n_a * m))
     for start in range(0, t.size, chunk):
         part = slice(start, min(start + chunk, t.size))
         basis = _chebyshev(_padded(t[part]), n_t).reshape(-1, BLOCK, n_t)
-        yield part, np.matmul(basis, flat).reshape(-1, n_a, n_bands)
+        yield part, np.matmul(basis, flat).reshape(-1, n_a, m)
 
 
 def _sum(basis: np.ndarray, series: np.ndarray, part: slice) -> np.ndarray:

@@ -2,35 +2,24 @@
 
 from __future__ import annotations
 
-import math
+from collections.abc import Sequence
 from dataclasses import dataclass
-from functools import lru_cache
 
 import numpy as np
 
 from starkiln.dust import Dust
 from starkiln.emitters import Emitter
 from starkiln.errors import InputError
-from starkiln.forward._direct import extinguished_mean
-from starkiln.forward._kernels import chebyshev_fit, chebyshev_nodes, evaluate, evaluate_slope
-from starkiln.passbands import load_band
+from starkiln.forward._build import AV_RANGE, band_coefficients, ln_temperature_range, rv_range
+from starkiln.forward._kernels import contract, evaluate, evaluate_slope
+from starkiln.passbands import Band, load_band
 
-__all__ = ["AV_RANGE", "BandFluxTable", "band_fluxes", "extrapolated_bands"]
-
-#: Extinction that the tables cover, mag at 0.55 um.
-AV_RANGE = (0.0, 10.0)
-
-#: Terms in ln T and in extinction that every band is fitted with. Most need half of
-#: them; SDSS u needs nearly all, for at high extinction its red leak takes over.
-_TERMS = (32, 24)
-
-#: Trailing terms that add up to less than this in ln flux are dropped, band by band.
-_DROPPED = 1e-7
+__all__ = ["BandFluxTable", "band_fluxes", "extrapolated_bands"]
 
 
 @dataclass(frozen=True, eq=False)
 class BandFluxTable:
-    """Band fluxes of one emitter behind one dust law, as functions of x and av.
+    """Band fluxes of one emitter behind one dust law, as functions of x, av (and rv).
 
     Attributes
     ----------
@@ -38,8 +27,10 @@ class BandFluxTable:
         Names of the bands, the order of the columns.
     ln_temperature : tuple of float
         Lowest and highest ln of the temperature in K.
-    coefficients : numpy.ndarray, shape (n_t, n_av, n_bands)
-        Chebyshev coefficients in ln T and av.
+    coefficients : numpy.ndarray, shape (n_t, n_av, n_rv * n_bands)
+        Chebyshev coefficients in ln T, av and R_V; n_rv is 1 where R_V is fixed.
+    rv_range : tuple of float or None
+        Lowest and highest R_V; None where it is fixed.
 
     Notes
     -----
@@ -52,8 +43,9 @@ class BandFluxTable:
     bands: tuple[str, ...]
     ln_temperature: tuple[float, float]
     coefficients: np.ndarray
+    rv_range: tuple[float, float] | None = None
 
-    def ln_flux(self, x: np.ndarray, av: np.ndarray) -> np.ndarray:
+    def ln_flux(self, x: np.ndarray, av: np.ndarray, rv: np.ndarray | None = None) -> np.ndarray:
         """Return the ln band means of B_lambda 10^(-0.4 av k(lambda)).
 
         Parameters
@@ -62,6 +54,8 @@ class BandFluxTable:
             ln of the temperature in K.
         av : numpy.ndarray, shape (n,)
             A(0.55 um), mag.
+        rv : numpy.ndarray, shape (n,), optional
+            R_V, where the table was made with a free one.
 
         Returns
         -------
@@ -73,34 +67,57 @@ class BandFluxTable:
         InputError
             A point is outside the table or NaN: check the bounds first.
         """
-        return evaluate(self.coefficients, *self._scaled(x, av))
+        t, a, r = self._scaled(x, av, rv)
+        return self._over_rv(evaluate(self.coefficients, t, a), r)
 
-    def ln_flux_and_slope(self, x: np.ndarray, av: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
+    def ln_flux_and_slope(
+        self, x: np.ndarray, av: np.ndarray, rv: np.ndarray | None = None
+    ) -> tuple[np.ndarray, np.ndarray]:
         """Return `ln_flux` and its derivative with respect to av, per mag."""
-        value, slope = evaluate_slope(self.coefficients, *self._scaled(x, av))
-        return value, slope * (2.0 / (AV_RANGE[1] - AV_RANGE[0]))
+        t, a, r = self._scaled(x, av, rv)
+        value, slope = evaluate_slope(self.coefficients, t, a)
+        per_mag = 2.0 / (AV_RANGE[1] - AV_RANGE[0])
+        return self._over_rv(value, r), self._over_rv(slope, r) * per_mag
 
-    def _scaled(self, x: np.ndarray, av: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
+    def _over_rv(self, series: np.ndarray, r: np.ndarray | None) -> np.ndarray:
+        if r is None:
+            return series
+        return contract(series, r, self.coefficients.shape[2] // len(self.bands))
+
+    def _scaled(
+        self, x: np.ndarray, av: np.ndarray, rv: np.ndarray | None
+    ) -> tuple[np.ndarray, np.ndarray, np.ndarray | None]:
         x, av = np.asarray(x, dtype=float), np.asarray(av, dtype=float)
         if x.ndim != 2 or x.shape[1] != 1 or av.shape != x.shape[:1]:
             raise InputError(
                 f"x must have shape (n, 1) and av shape (n,), not {x.shape} and {av.shape}"
             )
         t = _to_unit(x[:, 0], self.ln_temperature, "ln of the temperature in K")
-        return t, _to_unit(av, AV_RANGE, "av in mag")
+        a = _to_unit(av, AV_RANGE, "av in mag")
+        if self.rv_range is None:
+            if rv is not None:
+                raise InputError("this table has a fixed R_V: make it with free_rv=True")
+            return t, a, None
+        if rv is None or np.shape(rv) != av.shape:
+            raise InputError(f"this table has a free R_V: give rv of shape {av.shape}")
+        return t, a, _to_unit(np.asarray(rv, dtype=float), self.rv_range, "R_V")
 
 
-def band_fluxes(emitter: Emitter, bands: tuple[str, ...], dust: Dust) -> BandFluxTable:
-    """Return the table of band fluxes, building what is not in memory yet.
+def band_fluxes(
+    emitter: Emitter, bands: Sequence[str | Band], dust: Dust, *, free_rv: bool = False
+) -> BandFluxTable:
+    """Return the table of band fluxes, building what is not in memory or cache yet.
 
     Parameters
     ----------
     emitter : Emitter
         The surface; one of one parameter.
-    bands : tuple of str
-        Names of bands.
+    bands : sequence of str or Band
+        Bands, or their names.
     dust : Dust
         Law and R_V; its prior does not matter here.
+    free_rv : bool
+        Whether R_V is an argument of the table, over the law's whole range.
 
     Returns
     -------
@@ -111,48 +128,28 @@ def band_fluxes(emitter: Emitter, bands: tuple[str, ...], dust: Dust) -> BandFlu
     Raises
     ------
     BandError, DustError
-        A band is unknown, or the law does not reach it.
+        A band is unknown, the law does not reach it, or it has no free R_V.
     """
-    names = tuple(load_band(band).name for band in bands)
-    per_band = [_band_coefficients(emitter, name, dust.law, dust.rv) for name in names]
-    shape = np.max([c.shape for c in per_band], axis=0) if per_band else np.ones(2, dtype=int)
-    coefficients = np.zeros((*shape, len(names)))
+    loaded = [load_band(band) if isinstance(band, str) else band for band in bands]
+    plain = Dust(law=dust.law, rv=dust.rv, f_a=dust.f_a)
+    per_band = [band_coefficients(emitter, band, plain, free_rv=free_rv) for band in loaded]
+    n_axes = 3 if free_rv else 2
+    shape = np.max([c.shape for c in per_band], axis=0) if per_band else np.full(n_axes, 2)
+    stacked = np.zeros((*shape, len(loaded)))
     for k, own in enumerate(per_band):
-        coefficients[: own.shape[0], : own.shape[1], k] = own
-    return BandFluxTable(names, _ln_range(emitter), coefficients)
+        corner = tuple(slice(n) for n in own.shape)
+        stacked[..., k][corner] = own
+    return BandFluxTable(
+        tuple(band.name for band in loaded),
+        ln_temperature_range(emitter),
+        stacked.reshape(shape[0], shape[1], -1),
+        rv_range(plain) if free_rv else None,
+    )
 
 
-def extrapolated_bands(bands: tuple[str, ...], dust: Dust) -> tuple[str, ...]:
+def extrapolated_bands(bands: Sequence[str], dust: Dust) -> tuple[str, ...]:
     """Return those of the bands that reach beyond the dust law's published range."""
     return tuple(b for b in bands if np.any(dust.extrapolated(load_band(b).wavelength_m)))
-
-
-@lru_cache(maxsize=1024)
-def _band_coefficients(emitter: Emitter, name: str, law: str, rv: float) -> np.ndarray:
-    band = load_band(name)
-    ratio = Dust(law=law, rv=rv).curve(band.wavelength_m)
-    low, high = _ln_range(emitter)
-    temperature_k = np.exp(low + 0.5 * (high - low) * (chebyshev_nodes(_TERMS[0]) + 1.0))
-    av = AV_RANGE[0] + 0.5 * (AV_RANGE[1] - AV_RANGE[0]) * (chebyshev_nodes(_TERMS[1]) + 1.0)
-    radiance = emitter.radiance(band.wavelength_m, temperature_k)
-    coefficients = _trimmed(chebyshev_fit(extinguished_mean(radiance, ratio, band.weight, av)))
-    coefficients.flags.writeable = False
-    return coefficients
-
-
-def _trimmed(coefficients: np.ndarray) -> np.ndarray:
-    for axis in (0, 1):
-        size = np.abs(coefficients).sum(axis=1 - axis)
-        tail = np.cumsum(size[::-1])[::-1]
-        # The recurrences start from two terms.
-        keep = max(2, int(np.count_nonzero(tail > _DROPPED)))
-        coefficients = coefficients[:keep] if axis == 0 else coefficients[:, :keep]
-    return np.ascontiguousarray(coefficients)
-
-
-def _ln_range(emitter: Emitter) -> tuple[float, float]:
-    low, high = emitter.bounds["temperature"]
-    return math.log(low), math.log(high)
 
 
 def _to_unit(value: np.ndarray, bounds: tuple[float, float], what: str) -> np.ndarray:

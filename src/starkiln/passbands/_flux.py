@@ -1,56 +1,19 @@
-"""Magnitudes and flux densities of any unit to the one flux of the inside: W m-3."""
+"""Photometry of any unit to and from the one flux of the inside: band mean, W m-3."""
 
 from __future__ import annotations
 
 import math
-import re
-import warnings
-from functools import lru_cache
 from typing import Any
 
 import numpy as np
 
-from starkiln.constants import C
-from starkiln.errors import InputError
 from starkiln.passbands._band import Band
 from starkiln.passbands._library import load_band
+from starkiln.passbands._photometric_units import flux_unit_kind, parse_unit
 
-__all__ = ["flux_from", "flux_unit_kind"]
+__all__ = ["flux_from", "flux_to", "flux_unit_kind"]
 
-_EXAMPLES = "mag, mag(AB), Jy, mJy, W m-2 um-1, erg s-1 cm-2 Angstrom-1 or erg s-1 cm-2 Hz-1"
 _MAG_TO_LN = 0.4 * math.log(10.0)
-#: Unit strings of magnitudes and the system that each states, None being the band's own.
-_MAGNITUDES = {
-    "mag": None,
-    "magnitude": None,
-    "mag(ab)": "AB",
-    "abmag": "AB",
-    "mag(st)": "ST",
-    "stmag": "ST",
-    "mag(vega)": "Vega",
-    "vegamag": "Vega",
-}
-
-
-def flux_unit_kind(unit: Any) -> str:
-    """Return what kind of photometry a unit is of.
-
-    Parameters
-    ----------
-    unit : str or astropy.units.Unit
-        `mag`, `mag(AB)`, `mag(ST)`, `mag(Vega)`, or a flux density of any unit
-        that astropy understands (`mJy`, `erg / (s cm2 Angstrom)`).
-
-    Returns
-    -------
-    {"magnitude", "per wavelength", "per frequency"}
-
-    Raises
-    ------
-    InputError
-        Neither a magnitude nor a flux density.
-    """
-    return _unit(str(unit))[0]
 
 
 def flux_from(
@@ -78,7 +41,10 @@ def flux_from(
     -------
     flux, error : numpy.ndarray
         Shape of `value`, W m-3. F_nu turns into F_lambda at the band's pivot
-        wavelength, exactly; the error of a magnitude is 0.4 ln(10) F e.
+        wavelength, photons at the mean wavelength of the band's photons, both
+        exactly for any source. The error of a magnitude is 0.4 ln(10) F e, of an
+        asinh magnitude that of its derivative (Lupton, Gunn & Szalay 1999,
+        AJ 118, 1406, eq. 3: F = 2 b F0 sinh(-0.4 ln(10) m - ln b)).
 
     Raises
     ------
@@ -90,33 +56,52 @@ def flux_from(
     passband = load_band(band) if isinstance(band, str) else band
     value = np.asarray(value, dtype=float)
     error = np.broadcast_to(np.asarray(error, dtype=float), value.shape)
-    kind, factor, stated = _unit(str(unit))
-    if kind == "magnitude":
-        zero = passband.zero_flux_w_m3(stated or magnitude_system)
+    parsed = parse_unit(str(unit))
+    if parsed.kind == "magnitude":
+        zero = passband.zero_flux_w_m3(parsed.system or magnitude_system)
         flux = zero * np.exp(-_MAG_TO_LN * value)
         return flux, _MAG_TO_LN * flux * error
-    if kind == "per frequency":
-        factor *= C.value / passband.pivot_m**2
+    if parsed.kind == "asinh magnitude":
+        softening = parsed.asinh_softening(passband)
+        scale = 2.0 * softening * passband.zero_flux_w_m3()
+        argument = -_MAG_TO_LN * value - math.log(softening)
+        return scale * np.sinh(argument), _MAG_TO_LN * scale * np.cosh(argument) * error
+    factor = parsed.flux_factor(passband)
     return value * factor, error * factor
 
 
-@lru_cache(maxsize=64)
-def _unit(text: str) -> tuple[str, float, str | None]:
-    """Kind of a unit, its factor to SI, and the magnitude system that it states."""
-    plain = text.replace(" ", "").lower()
-    if plain in _MAGNITUDES:
-        return "magnitude", 1.0, _MAGNITUDES[plain]
-    from astropy import units as u
+def flux_to(
+    flux: Any,
+    error: Any,
+    unit: Any,
+    band: Band | str,
+    magnitude_system: str | None = None,
+) -> tuple[np.ndarray, np.ndarray]:
+    """Turn band means of F_lambda, W m-3, into photometry: the inverse of `flux_from`.
 
-    # In a flux density A is the Angstrom of many tables, never the ampere.
-    spelt = re.sub(r"(?<![A-Za-z])A(?![A-Za-z])", "Angstrom", text)
-    try:
-        with warnings.catch_warnings():
-            warnings.simplefilter("ignore", u.UnitsWarning)
-            unit = u.Unit(spelt)
-    except ValueError as error:
-        raise InputError(f"unknown unit '{text}': use {_EXAMPLES}") from error
-    for kind, base in (("per wavelength", u.W / u.m**3), ("per frequency", u.W / u.m**2 / u.Hz)):
-        if unit.is_equivalent(base):
-            return kind, float(unit.to(base)), None
-    raise InputError(f"the unit '{text}' is no flux density: use {_EXAMPLES}")
+    Returns
+    -------
+    value, error : numpy.ndarray
+        Shape of `flux`, in `unit`. NaN for the magnitude of a flux that is not
+        positive; an asinh magnitude has none such.
+
+    Raises
+    ------
+    InputError, BandError
+        As `flux_from`.
+    """
+    passband = load_band(band) if isinstance(band, str) else band
+    flux = np.asarray(flux, dtype=float)
+    error = np.broadcast_to(np.asarray(error, dtype=float), flux.shape)
+    parsed = parse_unit(str(unit))
+    if parsed.kind == "magnitude":
+        zero = passband.zero_flux_w_m3(parsed.system or magnitude_system)
+        positive = np.where(flux > 0.0, flux, np.nan)
+        return -np.log(positive / zero) / _MAG_TO_LN, error / (_MAG_TO_LN * positive)
+    if parsed.kind == "asinh magnitude":
+        softening = parsed.asinh_softening(passband)
+        ratio = flux / (2.0 * softening * passband.zero_flux_w_m3())
+        slope = _MAG_TO_LN * 2.0 * softening * passband.zero_flux_w_m3() * np.hypot(1.0, ratio)
+        return -(np.arcsinh(ratio) + math.log(softening)) / _MAG_TO_LN, error / slope
+    factor = parsed.flux_factor(passband)
+    return flux / factor, error / factor

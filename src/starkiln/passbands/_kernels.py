@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-__all__ = ["curve_nodes"]
+__all__ = ["curve_nodes", "spectrum_mean"]
 
 #: Gauss-Lobatto rule of five nodes on [-1, 1] (Abramowitz & Stegun 1964, 25.4.32): it
 #: keeps the published samples as nodes and splits each interval in four. The curve is
@@ -42,3 +42,38 @@ def curve_nodes(
     kept = steps > 0.0
     nodes = nodes[kept]
     return nodes, np.interp(nodes, wavelength, response), steps[kept]
+
+
+def spectrum_mean(
+    curve: tuple[np.ndarray, np.ndarray],
+    spectrum: tuple[np.ndarray, np.ndarray],
+    *,
+    photon: bool,
+) -> float:
+    """Return the mean of a tabulated spectrum through a curve, both piecewise linear.
+
+    Parameters
+    ----------
+    curve : tuple of numpy.ndarray, shape (n,)
+        Wavelength, increasing, and response.
+    spectrum : tuple of numpy.ndarray, shape (m,)
+        Wavelength, increasing, and flux density per wavelength; zero outside.
+    photon : bool
+        Whether the response weights photons.
+
+    Notes
+    -----
+    On the union of both grids the integrand is a polynomial of degree three in
+    every interval, for which Simpson's rule is exact.
+    """
+    grid = np.union1d(curve[0], np.clip(spectrum[0], curve[0][0], curve[0][-1]))
+    points = np.empty(2 * grid.size - 1)
+    points[::2], points[1::2] = grid, 0.5 * (grid[1:] + grid[:-1])
+    weight = np.interp(points, *curve) * (points if photon else 1.0)
+    flux = np.interp(points, *spectrum, left=0.0, right=0.0)
+    width = np.diff(grid) / 6.0
+
+    def integral(y: np.ndarray) -> float:
+        return float(width @ (y[:-2:2] + 4.0 * y[1::2] + y[2::2]))
+
+    return integral(weight * flux) / integral(weight)

@@ -2,29 +2,31 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from functools import cache
+from pathlib import Path
 from typing import Any
 
-from starkiln.constants import C
-from starkiln.passbands._band import AB_ZERO_W_M2_HZ, Band
+from starkiln.passbands._band import Band, zero_flux_w_m3
+from starkiln.passbands._file import read_band
 from starkiln.passbands._kernels import curve_nodes
-from starkiln.passbands._names import canonical_name
+from starkiln.passbands._names import canonical_name, is_band_file
 from starkiln.store import read_data_table
 
 __all__ = ["load_band"]
 
 _ANGSTROM_M = 1e-10
-_JY = 1e-26
 
 
-def load_band(name: str) -> Band:
-    """Return the passband of that name.
+def load_band(name: str | Path) -> Band:
+    """Return the passband of that name, or that of a file.
 
     Parameters
     ----------
-    name : str
+    name : str or pathlib.Path
         Name of the trade, such as `2MASS Ks`; case, space, dot, dash and
-        underscore do not matter.
+        underscore do not matter. Or the path of a file that holds a band of the
+        user's own, see `read_band`.
 
     Returns
     -------
@@ -34,9 +36,20 @@ def load_band(name: str) -> Band:
     Raises
     ------
     BandError
-        The name is unknown; the nearest names are offered.
+        The name is unknown (the nearest names are offered), or the file cannot
+        be used.
     """
-    return _load(canonical_name(name))
+    if is_band_file(str(name)):
+        path = Path(name).resolve()
+        stamp = path.stat() if path.is_file() else None
+        return _load_file(path, (stamp.st_mtime_ns, stamp.st_size) if stamp else None)
+    return _load(canonical_name(str(name)))
+
+
+@cache
+def _load_file(path: Path, stamp: tuple[int, int] | None) -> Band:
+    # The stamp is part of the cache's key, so that an edited file is read again.
+    return read_band(path)
 
 
 @cache
@@ -45,50 +58,38 @@ def _load(name: str) -> Band:
     row = next(r for r in zero_points if r["band"] == name)
     systems = read_data_table("passbands", "systems.ecsv")
     system = next(s for s in systems if s["system"] == row["system"])
-    wavelength_m, response, step_m = _curve(f"{system['curve_group']}-{row['curve']}")
-    bare = Band(name, str(system["system"]), system["response"], wavelength_m, response, step_m)
-    return Band(
-        name=name,
-        system=bare.system,
-        response_kind=bare.response_kind,
-        wavelength_m=wavelength_m,
-        response=response,
-        step_m=step_m,
+    wavelength_m, response, step_m = _curve(str(system["curve_group"]), str(row["curve"]))
+    kind: Any = str(system["response"])
+    bare = Band(name, str(system["system"]), kind, wavelength_m, response, step_m)
+    vega = _optional(row["vega_zero_point"])
+    return replace(
+        bare,
         native_system=str(system["native"]),
-        vega_zero_w_m3=_vega_zero(row, bare),
+        published_vega_zero_w_m3=(
+            None if vega is None else zero_flux_w_m3(vega, str(row["vega_unit"]), bare.pivot_m)
+        ),
         ab_offset_mag=float(row["ab_offset"]),
+        asinh_softening=_optional(row["asinh_softening"]),
         zero_point_error_mag=float(row["zero_point_error"]),
         offset_error_mag=float(system["offset_error"]),
         saturation_mag=_optional(row["saturation"]),
         saturation_error_mag=_optional(row["saturation_error"]),
-        source=f"curve: {system['curve_source']}; zero point: {row['zero_point_source']}",
+        curve_source=str(system["curve_source"]),
+        zero_point_source=str(row["zero_point_source"]),
+        offset_source=str(system["offset_source"]),
+        saturation_source=str(row["saturation_source"]),
     )
 
 
-def _curve(curve: str) -> tuple[Any, Any, Any]:
+def _curve(group: str, curve: str) -> tuple[Any, Any, Any]:
     from speclite.filters import load_filter
 
     # speclite stores wavelengths in Angstrom, trimmed to where the response is not zero.
-    published = load_filter(curve)
+    published = load_filter(curve if "-" in curve else f"{group}-{curve}")
     nodes, values, steps = curve_nodes(published.wavelength * _ANGSTROM_M, published.response)
     for array in (nodes, values, steps):
         array.flags.writeable = False
     return nodes, values, steps
-
-
-def _vega_zero(row: Any, band: Band) -> float | None:
-    """Band mean of F_lambda of Vega magnitude 0, from the form in which it is published."""
-    from astropy import units as u
-
-    value = _optional(row["vega_zero_point"])
-    if value is None:
-        return None
-    unit = u.Unit(str(row["vega_unit"]))
-    if unit == u.mag:
-        return AB_ZERO_W_M2_HZ * 10.0 ** (-0.4 * value) * C.value / band.pivot_m**2
-    if unit.is_equivalent(u.Jy):
-        return float(unit.to(u.Jy, value)) * _JY * C.value / band.pivot_m**2
-    return float(unit.to(u.W / u.m**3, value))
 
 
 def _optional(value: Any) -> float | None:

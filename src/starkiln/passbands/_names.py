@@ -5,11 +5,12 @@ from __future__ import annotations
 import difflib
 import re
 from functools import lru_cache
+from pathlib import Path
 
 from starkiln.errors import BandError
 from starkiln.store import read_data_table
 
-__all__ = ["band_names", "canonical_name", "is_band", "match_band"]
+__all__ = ["band_names", "canonical_name", "is_band", "is_band_file", "match_band"]
 
 #: Other names of the trade, each of one band only. A bare letter (J, V, g) is none:
 #: several systems use it.
@@ -27,8 +28,18 @@ _SYNONYMS = {
     "Johnson V": ("Bessell V",),
     "Cousins R": ("Bessell R", "R_C", "Rc"),
     "Cousins I": ("Bessell I", "I_C", "Ic"),
+    "GALEX FUV": ("FUV",),
+    "GALEX NUV": ("NUV",),
+    "Euclid VIS": ("VIS",),
 }
-_SURVEY_SYNONYMS = {"Pan-STARRS ": ("PS1 ", "Pan-STARRS1 ", "PanSTARRS1 ")}
+_SURVEY_SYNONYMS = {
+    "Pan-STARRS ": ("PS1 ", "Pan-STARRS1 ", "PanSTARRS1 "),
+    "DECam ": ("DES ",),
+    "LSST ": ("Rubin ",),
+}
+
+#: What the name of a file with a band of the user's own ends in.
+BAND_FILE_SUFFIXES = (".ecsv", ".csv", ".vot", ".votable", ".xml")
 
 
 @lru_cache(maxsize=1)
@@ -41,9 +52,17 @@ def match_band(text: str) -> str | None:
     """Return the name of the band that `text` means, or None.
 
     Case, space, dot, dash and underscore do not matter; a few synonyms of the
-    trade are known (`2MASS K`, `PS1 g`, `W1`).
+    trade are known (`2MASS K`, `PS1 g`, `W1`). The path of a file with a band of
+    the user's own (`read_band`) stands for itself.
     """
+    if is_band_file(text) and Path(text).is_file():
+        return text
     return _index().get(_key(text))
+
+
+def is_band_file(text: str) -> bool:
+    """Whether `text` is a file name that a band of the user's own can have."""
+    return text.lower().endswith(BAND_FILE_SUFFIXES)
 
 
 def is_band(text: str) -> bool:

@@ -1,0 +1,112 @@
+"""Coefficients of one band's tabulated flux, from memory, disk or integration."""
+
+from __future__ import annotations
+
+import hashlib
+import math
+from dataclasses import replace
+from functools import lru_cache
+
+import numpy as np
+
+from starkiln._version import __version__
+from starkiln.dust import Dust
+from starkiln.emitters import Emitter
+from starkiln.errors import DustError
+from starkiln.forward._cache import cached_array
+from starkiln.forward._direct import extinguished_mean
+from starkiln.forward._kernels import chebyshev_fit, chebyshev_nodes, trimmed
+from starkiln.passbands import Band
+
+__all__ = ["AV_RANGE", "band_coefficients", "ln_temperature_range", "rv_range"]
+
+#: Extinction that the tables cover, mag at 0.55 um.
+AV_RANGE = (0.0, 10.0)
+
+#: Terms in ln T, in extinction and in R_V that every band is fitted with. Most need half
+#: of them; SDSS u needs nearly all, for at high extinction its red leak takes over.
+_TERMS = (32, 24, 20)
+
+#: Trailing terms that add up to less than this in ln flux are dropped, band by band.
+_DROPPED = 1e-7
+
+#: To be raised whenever the numbers of a table change.
+_FORMAT = 1
+
+
+@lru_cache(maxsize=1024)
+def band_coefficients(emitter: Emitter, band: Band, dust: Dust, *, free_rv: bool) -> np.ndarray:
+    """Return the Chebyshev coefficients of ln band flux.
+
+    Parameters
+    ----------
+    emitter : Emitter
+        Of one parameter.
+    band : Band
+        The passband.
+    dust : Dust
+        Law and R_V.
+    free_rv : bool
+        Whether R_V is a third axis.
+
+    Returns
+    -------
+    numpy.ndarray, shape (n_t, n_a) or (n_t, n_a, n_r)
+        In ln T over the emitter's range, av over `AV_RANGE` and R_V over the law's
+        range, each scaled to [-1, 1].
+    """
+    key = _key(emitter, band, dust, free_rv)
+    coefficients = cached_array(key, lambda: _integrated(emitter, band, dust, free_rv))
+    coefficients.flags.writeable = False
+    return coefficients
+
+
+def ln_temperature_range(emitter: Emitter) -> tuple[float, float]:
+    """Return the range of ln T that the table of an emitter covers."""
+    low, high = emitter.bounds["temperature"]
+    return math.log(low), math.log(high)
+
+
+def rv_range(dust: Dust) -> tuple[float, float]:
+    """Return the range of R_V of the dust's law.
+
+    Raises
+    ------
+    DustError
+        The law is a single average.
+    """
+    if dust.rv_range is None:
+        raise DustError(f"the law {dust.law} is a single average: its R_V cannot be free")
+    return dust.rv_range
+
+
+def _integrated(emitter: Emitter, band: Band, dust: Dust, free_rv: bool) -> np.ndarray:
+    temperature_k = np.exp(_nodes(ln_temperature_range(emitter), _TERMS[0]))
+    radiance = emitter.radiance(band.wavelength_m, temperature_k)
+    av = _nodes(AV_RANGE, _TERMS[1])
+
+    def ln_flux(curve: np.ndarray) -> np.ndarray:
+        return extinguished_mean(radiance, curve, band.weight, av)
+
+    if not free_rv:
+        return trimmed(chebyshev_fit(ln_flux(dust.curve(band.wavelength_m))), _DROPPED)
+    laws = [replace(dust, rv=float(rv)) for rv in _nodes(rv_range(dust), _TERMS[2])]
+    values = np.stack([ln_flux(law.curve(band.wavelength_m)) for law in laws], axis=-1)
+    return trimmed(chebyshev_fit(values), _DROPPED)
+
+
+def _nodes(bounds: tuple[float, float], n: int) -> np.ndarray:
+    low, high = bounds
+    return low + 0.5 * (high - low) * (chebyshev_nodes(n) + 1.0)
+
+
+def _key(emitter: Emitter, band: Band, dust: Dust, free_rv: bool) -> str:
+    """Digest of all that the coefficients follow from."""
+    from importlib.metadata import version
+
+    law = (dust.law, None if free_rv else dust.rv, dust.f_a, version("dust_extinction"))
+    settings = (_FORMAT, __version__, _TERMS, _DROPPED, AV_RANGE, repr(emitter), law)
+    digest = hashlib.sha256(repr(settings).encode())
+    for array in (band.wavelength_m, band.weight):
+        digest.update(np.ascontiguousarray(array).tobytes())
+    return digest.hexdigest()
