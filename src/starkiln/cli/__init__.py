@@ -18,6 +18,7 @@ from starkiln.errors import StarkilnError
 #: Command -> (module, what it does in one line).
 COMMANDS: dict[str, tuple[str, str]] = {
     "fit": ("starkiln.cli.fit", "fit a catalogue: temperatures, diameters, radii, luminosities"),
+    "figures": ("starkiln.cli.figures", "draw the figures of a run"),
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
 }
 
