@@ -114,13 +114,17 @@ def test_corner_shows_every_label_with_its_unit(run, width, monkeypatch):
 
 def test_corner_title_is_the_rounded_median_and_interval(run):
     """The percentiles are numpy's, from the draws."""
-    view = fake_view(run, 1)
+    view = dataclasses.replace(fake_view(run, 1), summary={})
     figure = corner_figure(view)
     low, middle, high = np.percentile(view.draws["temperature"], [16, 50, 84])
     assert middle == pytest.approx(5790, abs=5)
     assert high - middle == pytest.approx(90, abs=5)
     assert middle - low == pytest.approx(110, abs=5)
     assert figure.axes[0].get_title() == "$T$ = $5790^{+90}_{-110}$ K"
+    view = dataclasses.replace(
+        view, summary={"temperature": 5800.0, "temperature_lo": 5700.0, "temperature_hi": 6000.0}
+    )
+    assert corner_figure(view).axes[0].get_title() == "$T$ = $5800^{+200}_{-100}$ K"
 
 
 def test_corner_refuses_what_is_not_there(run):

@@ -9,8 +9,8 @@ from typing import Any
 import numpy as np
 
 from starkiln.errors import InputError
-from starkiln.report._quantities import FITTED, Quantity, quantity
-from starkiln.report._rounding import round_asymmetric
+from starkiln.report._quantities import FITTED, Printed, printed
+from starkiln.report._rounding import Rounded, round_asymmetric
 from starkiln.report._style import INK, MODEL, new_figure, width_inches
 from starkiln.report._text import drawable, star_label
 from starkiln.report._view import FitView, view_of
@@ -66,20 +66,20 @@ def corner_figure(
             warnings.filterwarnings("ignore", message="Too few points to create valid contours")
             corner.corner(sample, fig=drawn, **_options(shown, sample))
         inches = width_inches(width) if figure is None else figure.get_size_inches()[0]
-        _finish(drawn, shown, inches)
+        _finish(drawn, view, shown, inches)
         drawn.suptitle(
             drawable(star_label(view.name, view.row)), parse_math=False, x=0.99, ha="right"
         )
     return drawn
 
 
-def _choose(view: FitView, wanted: Sequence[str] | None) -> list[Quantity]:
+def _choose(view: FitView, wanted: Sequence[str] | None) -> list[Printed]:
     if wanted is None:
         keys = [key for key in FITTED if key in view.draws and np.ptp(view.draws[key]) > 0.0]
     else:
         keys = list(wanted)
     for key in keys:
-        quantity(key)
+        printed(key)
         if key not in view.draws:
             raise InputError(
                 f"the draws of star {view.name!r} hold no {key!r}: "
@@ -92,17 +92,16 @@ def _choose(view: FitView, wanted: Sequence[str] | None) -> list[Quantity]:
             )
     if not keys:
         raise InputError(f"star {view.name!r} has no quantity that was left free")
-    return [quantity(key) for key in keys]
+    return [printed(key) for key in keys]
 
 
-def _options(shown: Sequence[Quantity], sample: np.ndarray) -> dict[str, Any]:
+def _options(shown: Sequence[Printed], sample: np.ndarray) -> dict[str, Any]:
     few = len(sample) < 2000
     return {
         "bins": 16 if few else 30,
         "smooth": 1.0,
         "levels": LEVELS,
         "color": INK,
-        "quantiles": [0.16, 0.5, 0.84],
         "labels": [item.label for item in shown],
         "max_n_ticks": 3,
         "plot_density": False,
@@ -121,8 +120,8 @@ def _range(column: np.ndarray) -> tuple[float, float]:
     return low - margin, high + margin
 
 
-def _finish(figure: Any, shown: Sequence[Quantity], inches: float) -> None:
-    """Set titles, and margins and label places in inches, so that they hold at any width."""
+def _finish(figure: Any, view: FitView, shown: Sequence[Printed], inches: float) -> None:
+    """Mark intervals, and set margins and label places in inches for any width."""
     count = len(shown)
     left, right, gap = 0.62, 0.1, 0.07
     panel = (inches - left - right) / count - gap
@@ -133,18 +132,20 @@ def _finish(figure: Any, shown: Sequence[Quantity], inches: float) -> None:
     panels = np.array(figure.axes[: count * count]).reshape(count, count)
     place = -0.45 / panel
     for index, item in enumerate(shown):
-        panels[index, index].set_title(_title(item, panels[index, index]), fontsize=7, pad=4)
+        middle, low, high = view.interval(item.key)
+        for value in (low, middle, high):
+            panels[index, index].axvline(value, color=INK, ls="--", lw=0.9)
+        title = _title(item, round_asymmetric(middle, low, high))
+        panels[index, index].set_title(title, fontsize=7, pad=4)
         panels[-1, index].xaxis.set_label_coords(0.5, place)
         panels[index, 0].yaxis.set_label_coords(place, 0.5)
     for axes in panels.flat:
         axes.tick_params(labelrotation=40, labelsize=6, pad=1)
 
 
-def _title(item: Quantity, panel: Any) -> str:
-    low, middle, high = (line.get_xdata()[0] for line in panel.lines[:3])
-    rounded = round_asymmetric(middle, low, high)
+def _title(item: Printed, rounded: Rounded | None) -> str:
     if rounded is None:
         return item.symbol
     text = rf"{rounded.value}^{{+{rounded.plus}}}_{{-{rounded.minus}}}"
     power = rf" \times 10^{{{rounded.exponent}}}" if rounded.exponent else ""
-    return f"{item.symbol} = ${text}{power}$ {item.unit_text}".rstrip()
+    return f"{item.symbol} = ${text}{power}$ {item.unit}".rstrip()

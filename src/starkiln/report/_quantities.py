@@ -1,115 +1,76 @@
-"""What each fitted or derived quantity is called and measured in, for people and files."""
+"""How figures and tables for print write each quantity: its symbol and its unit."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 
+from starkiln.derived import QUANTITIES
 from starkiln.errors import InputError
 
 
 @dataclass(frozen=True)
-class Quantity:
-    """One quantity of the results.
+class Printed:
+    """How one quantity of the results is printed.
 
     Attributes
     ----------
     key : str
         Column name.
-    title : str
-        In words.
     symbol : str
-        In matplotlib's math text, which LaTeX understands too.
+        In math text, which matplotlib and LaTeX both understand.
     unit : str
-        astropy's spelling; empty for a pure number.
-    unit_text : str
-        The unit as a figure's label prints it.
-    ucd : str
-        Unified content descriptor (IVOA UCD1+ 1.5).
+        The same; empty for a pure number.
     logarithmic : bool
         Whether it is better seen on a logarithmic axis.
     """
 
     key: str
-    title: str
     symbol: str
-    unit: str
-    unit_text: str
-    ucd: str
+    unit: str = ""
     logarithmic: bool = False
 
     @property
     def label(self) -> str:
         """Symbol and unit, for an axis."""
-        return f"{self.symbol} ({self.unit_text})" if self.unit_text else self.symbol
+        return f"{self.symbol} ({self.unit})" if self.unit else self.symbol
+
+    @property
+    def text(self) -> str:
+        """What it is, in words."""
+        return QUANTITIES[self.key].text
 
 
 _ALL = (
-    Quantity("temperature", "temperature", r"$T$", "K", "K", "phys.temperature"),
-    Quantity(
-        "angular_diameter", "angular diameter", r"$\theta$", "mas", "mas", "phys.angSize", True
-    ),
-    Quantity("av", "extinction at 0.55 um", r"$A_V$", "mag", "mag", "phys.absorption;em.opt.V"),
-    Quantity("rv", "total to selective extinction", r"$R_V$", "", "", "phys.absorption"),
-    Quantity("misfit", "fractional misfit of the emitter", r"$f$", "", "", "stat.error"),
-    Quantity(
-        "bolometric_flux",
-        "bolometric flux before dust",
-        r"$F_\mathrm{bol}$",
-        "W m-2",
-        r"$\mathrm{W\,m^{-2}}$",
-        "phot.flux.bol",
-        True,
-    ),
-    Quantity("distance", "distance", r"$d$", "pc", "pc", "pos.distance", True),
-    Quantity("radius", "radius", r"$R$", "solRad", r"$\mathrm{R_\odot}$", "phys.size.radius", True),
-    Quantity(
-        "luminosity",
-        "luminosity",
-        r"$L$",
-        "solLum",
-        r"$\mathrm{L_\odot}$",
-        "phys.luminosity",
-        True,
-    ),
-    Quantity("mass", "mass", r"$M$", "solMass", r"$\mathrm{M_\odot}$", "phys.mass", True),
-    Quantity("logg", "surface gravity", r"$\log g$", "dex(cm s-2)", "cgs", "phys.gravity"),
-    Quantity(
-        "feh", "metallicity", r"$[\mathrm{Fe/H}]$", "dex", "dex", "phys.abund.Z"
-    ),
-    Quantity(
-        "temperature_2",
-        "temperature of the second component",
-        r"$T_2$",
-        "K",
-        "K",
-        "phys.temperature",
-    ),
-    Quantity(
-        "area_ratio", "area of the second component over the first", r"$A_2/A_1$", "", "",
-        "phys.area;arith.ratio", True,
-    ),
-)  # fmt: skip
-QUANTITIES = {item.key: item for item in _ALL}
+    Printed("temperature", r"$T$", "K"),
+    Printed("temperature_2", r"$T_2$", "K"),
+    Printed("area_ratio", r"$A_2/A_1$", logarithmic=True),
+    Printed("angular_diameter", r"$\theta$", "mas", logarithmic=True),
+    Printed("av", r"$A_V$", "mag"),
+    Printed("rv", r"$R_V$"),
+    Printed("logg", r"$\log g$", "cgs"),
+    Printed("feh", r"$[\mathrm{Fe/H}]$", "dex"),
+    Printed("misfit", r"$f$"),
+    Printed("distance", r"$d$", "pc", logarithmic=True),
+    Printed("bolometric_flux", r"$F_\mathrm{bol}$", r"$\mathrm{W\,m^{-2}}$", logarithmic=True),
+    Printed("radius", r"$R$", r"$\mathrm{R_\odot}$", logarithmic=True),
+    Printed("luminosity", r"$L$", r"$\mathrm{L_\odot}$", logarithmic=True),
+)
+PRINTED = {item.key: item for item in _ALL}
 
+#: What follows from the others, so that a corner plot leaves it out unless asked.
+_DERIVED = ("bolometric_flux", "radius", "luminosity")
 #: Parameters of the posterior in the order in which figures show them.
-FITTED = (
-    "temperature", "temperature_2", "area_ratio", "angular_diameter", "av", "rv", "logg", "feh",
-    "misfit", "distance",
-)  # fmt: skip
-DERIVED = ("bolometric_flux", "radius", "luminosity")
+FITTED = tuple(key for key in PRINTED if key not in _DERIVED)
 
 
-def quantity(key: str) -> Quantity:
-    """Return the description of a quantity.
+def printed(key: str) -> Printed:
+    """Return how a quantity is printed.
 
     Raises
     ------
     InputError
         The quantity is unknown.
     """
-    try:
-        return QUANTITIES[key]
-    except KeyError:
-        raise InputError(
-            f"the quantity {key!r} is unknown: give one of {', '.join(QUANTITIES)}"
-        ) from None
+    if key not in PRINTED:
+        raise InputError(f"the quantity {key!r} is unknown: give one of {', '.join(PRINTED)}")
+    return PRINTED[key]

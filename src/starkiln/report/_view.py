@@ -6,13 +6,17 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import Any
 
 import numpy as np
 
 from starkiln.errors import InputError
+from starkiln.passbands import load_band
+from starkiln.report._priors import priors_of_problem, priors_of_settings
+from starkiln.runner import FitResult, Run, StarModel
 
 
 @dataclass(frozen=True)
@@ -51,11 +55,13 @@ class FitView:
     spectrum : callable or None
         `spectrum(wavelength_m, draws)`: shape (n_draws, n_wavelengths), W m-2 um-1.
     priors : mapping of str to callable
-        Unnormalised density of each prior that has one, by quantity.
+        Density of each prior that is known, by quantity, up to a factor.
     chain : numpy.ndarray or None
         Walkers' path, shape (steps, walkers, parameters).
     chain_names : tuple of str
         The chain's parameters.
+    burn_in : int
+        Steps of the chain that the posterior leaves out.
     """
 
     name: str
@@ -68,12 +74,21 @@ class FitView:
     priors: Mapping[str, Callable[[np.ndarray], np.ndarray]] = field(default_factory=dict)
     chain: np.ndarray | None = None
     chain_names: tuple[str, ...] = ()
+    burn_in: int = 0
 
     def some_draws(self, count: int) -> dict[str, np.ndarray]:
         """Return `count` draws (or all, where fewer), evenly picked from the kept ones."""
         kept = len(next(iter(self.draws.values())))
         pick = np.linspace(0, kept - 1, min(count, kept)).round().astype(int)
         return {key: np.asarray(values)[pick] for key, values in self.draws.items()}
+
+    def interval(self, key: str) -> tuple[float, float, float]:
+        """Return median, 16th and 84th percentile: those of the results, else of the draws."""
+        found = tuple(float(self.summary.get(f"{key}{end}", math.nan)) for end in ("", "_lo", "_hi"))
+        if all(math.isfinite(value) for value in found):
+            return found[0], found[1], found[2]
+        low, middle, high = np.percentile(self.draws[key], [16.0, 50.0, 84.0])
+        return float(middle), float(low), float(high)
 
     def need_draws(self, what: str) -> None:
         """Raise `InputError` where the run kept no posterior draws of this star."""
@@ -88,29 +103,41 @@ class FitView:
 
 
 def view_of(fit: Any) -> FitView:
-    """Return `fit` as a `FitView`; a `FitResult` of `starkiln.fit` is understood too."""
+    """Return `fit` as a `FitView`; the result of `starkiln.fit` is understood too.
+
+    Raises
+    ------
+    InputError
+        It is neither.
+    """
     if isinstance(fit, FitView):
         return fit
-    if not all(hasattr(fit, name) for name in ("star", "draws", "photometry")):
+    if not isinstance(fit, FitResult):
         raise InputError(
             f"{type(fit).__name__} is no fit: give what starkiln.fit returned, or "
             "run_view(run, row) for a star of a run folder"
         )
-    chain = getattr(fit, "chain", None)
+    photometry = _measurements(fit.photometry)
+    model, spectrum = _model_functions(fit.model, photometry)
+    summary: dict[str, Any] = {"status": fit.status, "message": fit.message}
+    for key, (middle, low, high) in fit.summary.items():
+        summary |= {key: middle, f"{key}_lo": low, f"{key}_hi": high}
     return FitView(
-        name=str(fit.star.name or ""),
-        row=1,
-        photometry=_measurements(fit.photometry),
+        name=fit.star.name,
+        row=fit.star.row or 1,
+        photometry=photometry,
         draws=_columns(fit.draws),
-        summary=_record(fit.summary),
-        model=lambda draws: fit.model(_table(draws)),
-        spectrum=lambda wavelength_m, draws: fit.spectrum(wavelength_m, _table(draws)),
-        chain=None if chain is None else np.asarray(chain),
-        chain_names=tuple(getattr(fit, "parameter_names", ())),
+        summary=summary,
+        model=model,
+        spectrum=spectrum,
+        priors=priors_of_problem(fit.problem),
+        chain=fit.chain,
+        chain_names=fit.parameter_names,
+        burn_in=fit.samples.burn_in,
     )
 
 
-def run_view(run: Any, row: int) -> FitView:
+def run_view(run: Run, row: int) -> FitView:
     """Return one star of a run folder as a `FitView`.
 
     Parameters
@@ -125,58 +152,73 @@ def run_view(run: Any, row: int) -> FitView:
     InputError
         The run has no such row.
     """
-    if not 1 <= row <= len(run.results):
-        raise InputError(f"row {row} is not in the run: it has rows 1 to {len(run.results)}")
-    summary = _record(run.results[row - 1])
-    model = run.model(row) if summary.get("status") != "rejected" else None
-    photometry = run.photometry[np.asarray(run.photometry["row"]) == row]
+    draws = _columns(run.draws(row))
+    line = run.results[row - 1]
+    summary = {key: plain_value(line[key]) for key in line.colnames}
+    photometry = _measurements(run.photometry[_slice_of(run, row)])
+    fitted = summary["status"] != "rejected"
+    model, spectrum = _model_functions(run.model(row), photometry) if fitted else (None, None)
     return FitView(
-        name=str(summary.get("name", "")),
+        name=summary["name"],
         row=row,
-        photometry=_measurements(photometry),
-        draws=_columns(run.draws(row)),
+        photometry=photometry,
+        draws=draws,
         summary=summary,
-        model=None if model is None else lambda draws: model(_table(draws)),
-        spectrum=lambda wavelength_m, draws: run.spectrum(row, wavelength_m, _table(draws)),
+        model=model,
+        spectrum=spectrum,
+        priors=priors_of_settings(run.settings),
     )
 
 
+def _model_functions(model: StarModel, photometry: tuple[Measurement, ...]) -> Any:
+    """Return band fluxes of all measurements, also of those left out, and the spectrum."""
+    every = replace(model, bands=tuple(item.band for item in photometry))
+    return every.band_flux, every.spectrum
+
+
+def _slice_of(run: Run, row: int) -> slice:
+    """Return where a star's measurements stand; the table is in the order of the rows."""
+    rows = np.asarray(run.photometry["row"])
+    return slice(*np.searchsorted(rows, [row, row + 1]))
+
+
 def _measurements(photometry: Any) -> tuple[Measurement, ...]:
-    from starkiln.passbands import load_band
-
-    found = []
-    for line in photometry:
-        band = load_band(str(line["band"]))
-        found.append(
-            Measurement(
-                band=band.name,
-                wavelength_um=band.pivot.to_value("um"),
-                width_um=band.width.to_value("um"),
-                flux=_number(line["flux"]),
-                e_flux=_number(line["e_flux"]),
-                limit=str(line["limit"]),
-                used=bool(line["used"]),
-                note=str(line["note"]),
-            )
-        )
-    return tuple(found)
+    return tuple(_measurement(line, load_band(str(line["band"]))) for line in photometry)
 
 
-def _number(value: Any) -> float:
-    return float(np.ma.filled(np.ma.asarray(value, dtype=float), np.nan))
+def _measurement(line: Any, band: Any) -> Measurement:
+    return Measurement(
+        band=band.name,
+        wavelength_um=band.pivot_m * 1e6,
+        width_um=band.width_m * 1e6,
+        flux=_number(line["flux"]),
+        e_flux=_number(line["e_flux"]),
+        limit=plain_text(line["limit"]),
+        used=bool(line["used"]),
+        note=plain_text(line["note"]),
+    )
+
+
+def plain_value(cell: Any) -> Any:
+    """Return a table's cell as a str, int, bool or float; NaN or "" where it is masked."""
+    kind = np.asarray(cell).dtype.kind
+    if kind in "US":
+        return plain_text(cell)
+    if np.ma.is_masked(cell):
+        return math.nan
+    return {"b": bool, "i": int, "u": int}.get(kind, float)(cell)
+
+
+def plain_text(cell: Any) -> str:
+    """Return a table's cell of text, "" where it is masked."""
+    return "" if np.ma.is_masked(cell) else str(cell)
+
+
+def _number(cell: Any) -> float:
+    return math.nan if np.ma.is_masked(cell) else float(cell)
 
 
 def _columns(draws: Any) -> dict[str, np.ndarray]:
     if draws is None:
         return {}
     return {key: np.asarray(draws[key], dtype=float) for key in draws.colnames}
-
-
-def _record(line: Any) -> dict[str, Any]:
-    return {key: line[key] for key in line.colnames}
-
-
-def _table(draws: Mapping[str, np.ndarray]) -> Any:
-    from astropy.table import Table
-
-    return Table(dict(draws))
