@@ -6,29 +6,25 @@ the page are tested without a fit, and come out the same every time.
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 import numpy as np
 from astropy.table import Table
 
-from starkiln.report import FitView, Measurement
+from starkiln.inference import Settings
+from starkiln.passbands import load_band
 
 H, C, K = 6.62607015e-34, 299792458.0, 1.380649e-23
 MAS = np.pi / 180 / 3600 / 1000
 
-#: Name, pivot wavelength and width in um (rounded; they need only be plausible).
-BANDS = {
-    "GALEX NUV": (0.2304, 0.077),
-    "SDSS g": (0.4702, 0.126),
-    "Gaia BP": (0.5110, 0.216),
-    "Johnson V": (0.5466, 0.085),
-    "SDSS r": (0.6176, 0.110),
-    "Gaia G": (0.6218, 0.405),
-    "Gaia RP": (0.7769, 0.292),
-    "2MASS J": (1.2410, 0.162),
-    "2MASS H": (1.6514, 0.251),
-    "2MASS Ks": (2.1657, 0.262),
-    "WISE W1": (3.3792, 0.663),
-    "WISE W2": (4.6293, 1.042),
-}
+BANDS = (
+    "SDSS u", "SDSS g", "Gaia BP", "Johnson V", "SDSS r", "Gaia G", "Gaia RP", "2MASS J",
+    "2MASS H", "2MASS Ks", "WISE W1", "WISE W2",
+)  # fmt: skip
+
+
+def pivot_um(band):
+    return load_band(band).pivot_m * 1e6
 
 
 def blackbody_flux(wavelength_um, temperature, angular_diameter, av=0.0):
@@ -58,10 +54,30 @@ def make_draws(temperature, *, count=256, seed=1, distance=None, av=0.3):
     return draws
 
 
+@dataclass(frozen=True)
+class FakeModel:
+    """Blackbody behind a power law of dust, through infinitely narrow bands."""
+
+    bands: tuple[str, ...]
+
+    def band_flux(self, draws):
+        return self._flux(np.array([pivot_um(band) for band in self.bands]), draws)
+
+    def spectrum(self, wavelength_m, draws):
+        return self._flux(np.asarray(wavelength_m) * 1e6, draws)
+
+    @staticmethod
+    def _flux(wavelength_um, draws):
+        t, theta, av = (
+            np.asarray(draws[key])[:, None] for key in ("temperature", "angular_diameter", "av")
+        )
+        return blackbody_flux(wavelength_um[None, :], t, theta, av)
+
+
 class FakeRun:
     """Stars of given temperatures; the last is rejected, the one before unconverged."""
 
-    def __init__(self, names, temperatures, *, folder=None, bands=tuple(BANDS), limits=True):
+    def __init__(self, names, temperatures, *, folder=None, bands=BANDS, limits=True):
         self.names, self.temperatures, self.bands = list(names), list(temperatures), list(bands)
         self.folder = folder
         self.meta = META
@@ -79,25 +95,21 @@ class FakeRun:
         return self._draws[row - 1]
 
     def model(self, row):
-        wavelength = np.array([BANDS[band][0] for band in self.bands])
-        return lambda draws: self._flux(wavelength, draws)
+        return FakeModel(self.bands)
 
-    def spectrum(self, row, wavelength_m, draws):
-        return self._flux(np.asarray(wavelength_m) * 1e6, draws)
+    @property
+    def settings(self):
+        return Settings()
 
-    @staticmethod
-    def _flux(wavelength_um, draws):
-        t, theta, av = (
-            np.asarray(draws[key])[:, None] for key in ("temperature", "angular_diameter", "av")
-        )
-        return blackbody_flux(wavelength_um[None, :], t, theta, av)
+    def rows_of(self, name):
+        return [row for row, known in enumerate(self.names, start=1) if known == name]
 
     def _photometry(self, limits):
         lines = []
         for row, temperature in enumerate(self.temperatures, start=1):
             rng = np.random.default_rng(1000 + row)
             for index, band in enumerate(self.bands):
-                wavelength = BANDS[band][0]
+                wavelength = pivot_um(band)
                 flux = blackbody_flux(wavelength, temperature, 0.2 * 5800 / temperature, 0.3)
                 error = (0.01 + 0.01 * index) * flux
                 flux = flux + rng.standard_normal() * np.hypot(error, 0.03 * flux)
@@ -148,25 +160,16 @@ MESSAGES = {
     "unconverged": "the ceiling of 20000 steps was reached with n_eff 140 of 1000",
     "rejected": "no usable band: every magnitude is missing",
 }
-META = {"seed": 1, "priors": {}, "versions": {"starkiln": "0.1.0"}}
-
-
-def fake_view(run, row):
-    """The view of a star without the project's passbands."""
-    lines = run.photometry[run.photometry["row"] == row]
-    draws = run.draws(row)
-    return FitView(
-        name=run.names[row - 1],
-        row=row,
-        photometry=tuple(
-            Measurement(
-                line["band"], *BANDS[line["band"]], line["flux"], line["e_flux"], line["limit"],
-                bool(line["used"]), line["note"],
-            )
-            for line in lines
-        ),
-        draws={} if draws is None else {key: np.asarray(draws[key]) for key in draws.colnames},
-        summary={key: run.results[key][row - 1] for key in run.results.colnames},
-        model=run.model(row),
-        spectrum=lambda wavelength_m, sample: run.spectrum(row, wavelength_m, sample),
-    )  # fmt: skip
+META = {
+    "priors": {"temperature": "log-uniform, 3000 to 50000 K", "av": "half-normal, 1 mag"},
+    "identity": {
+        "catalogue": "0" * 64,
+        "emitter": "blackbody",
+        "engine": "ensemble",
+        "seed": 1,
+        "settings": Settings().as_dict(),
+        "versions": {"starkiln": "0.1.0", "numpy": "2.4.0", "emcee": "3.1.6"},
+    },
+    "started": "2026-01-01T00:00:00+00:00",
+    "finished": "2026-01-01T00:01:00+00:00",
+}

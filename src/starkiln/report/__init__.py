@@ -4,23 +4,37 @@ Functions ending in `_figure` draw several panels and return the figure; those
 ending in `_plot` take `ax=` and return the axes. None of them needs a display.
 """
 
+from starkiln.report._chain import autocorrelation_plot, chain_figure
+from starkiln.report._checks import predictive_plot, prior_figure
+from starkiln.report._comparisons import pressure_plot, temperature_figure
 from starkiln.report._corner import corner_figure
-from starkiln.report._files import STAR_KINDS, rows_of, write_figures
+from starkiln.report._files import CATALOGUE_KINDS, RUN_KINDS, STAR_KINDS, Drawn, write_figures
+from starkiln.report._sample import hr_plot, misfit_plot
 from starkiln.report._sed import sed_figure
 from starkiln.report._style import image_bytes, save_figure, style
 from starkiln.report._view import FitView, Measurement, run_view, view_of
 
 __all__ = [
+    "CATALOGUE_KINDS",
+    "RUN_KINDS",
     "STAR_KINDS",
+    "Drawn",
     "FitView",
     "Measurement",
+    "autocorrelation_plot",
+    "chain_figure",
     "corner_figure",
+    "hr_plot",
     "image_bytes",
-    "rows_of",
+    "misfit_plot",
+    "predictive_plot",
+    "pressure_plot",
+    "prior_figure",
     "run_view",
     "save_figure",
     "sed_figure",
     "style",
+    "temperature_figure",
     "view_of",
     "write_figures",
 ]

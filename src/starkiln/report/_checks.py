@@ -22,8 +22,8 @@ def prior_figure(fit: Any, *, width: str | float = "two", figure: Any = None) ->
 
     Steps: posterior draws. Dashed line: prior density, on the same scale. Where the
     two agree, the data say nothing of the quantity and the prior is the answer. A
-    prior that is not known from the run folder (a row's own dust) is left out, and
-    the panel says so.
+    prior that the run folder does not hold (a row's own dust or distance) is left
+    out, and the panel says so.
 
     Parameters
     ----------
@@ -41,9 +41,7 @@ def prior_figure(fit: Any, *, width: str | float = "two", figure: Any = None) ->
     """
     view = view_of(fit)
     view.need_draws("comparison with the prior")
-    shown = [
-        printed(key) for key in FITTED if key in view.draws and np.ptp(view.draws[key]) > 0.0
-    ]
+    shown = [printed(key) for key in FITTED if key in view.draws and np.ptp(view.draws[key]) > 0.0]
     if not shown:
         raise InputError(f"star {view.name!r} has no quantity that was left free")
     across = min(3 if width == "two" else 2, len(shown))
@@ -74,8 +72,10 @@ def _draw_prior(ax: Any, item: Printed, view: FitView) -> None:
     ax.xaxis.get_major_locator().set_params(nbins=4)
     density = view.priors.get(item.key)
     if density is None:
-        ax.text(0.97, 0.95, "prior: the row's own", transform=ax.transAxes, ha="right", va="top",
-                fontsize="x-small", color=QUIET)  # fmt: skip
+        ax.text(
+            0.97, 0.95, "prior not in the run folder", transform=ax.transAxes, ha="right",
+            va="top", fontsize="x-small", color=QUIET,
+        )  # fmt: skip
         return
     grid = np.linspace(low, high, 400)
     ax.plot(grid, density(grid), color=INK, ls="--", label="prior")
@@ -124,12 +124,17 @@ def predictive_plot(fit: Any, *, ax: Any = None, width: str | float = "one") -> 
         axes.set_ylabel("flux over median prediction")
         title = f"{star_label(view.name, view.row, 36)}: p = {share:.2f}"
         axes.set_title(drawable(title), parse_math=False)
-        axes.legend(loc="best", handlelength=1.4)
+        low, high = axes.get_ylim()
+        axes.set_ylim(low, high + 0.16 * (high - low))
+        axes.legend(
+            loc="upper center", ncols=3, handlelength=1.0, columnspacing=0.9, handletextpad=0.4
+        )
     return axes
 
 
-def _replicate(model: np.ndarray, draws: Mapping[str, np.ndarray], observed: np.ndarray,
-               error: np.ndarray) -> tuple[np.ndarray, float]:
+def _replicate(
+    model: np.ndarray, draws: Mapping[str, np.ndarray], observed: np.ndarray, error: np.ndarray
+) -> tuple[np.ndarray, float]:
     """Return replicated data, shape (n_draws, n_bands), and the predictive p."""
     misfit = np.asarray(draws.get("misfit", np.zeros(len(model))))[:, None]
     sigma = np.hypot(error, misfit * model)
@@ -138,8 +143,9 @@ def _replicate(model: np.ndarray, draws: Mapping[str, np.ndarray], observed: np.
     return model + sigma * noise, float(np.mean(further))
 
 
-def _draw_predictive(ax: Any, replicated: np.ndarray, observed: Sequence[float],
-                     error: np.ndarray) -> None:
+def _draw_predictive(
+    ax: Any, replicated: np.ndarray, observed: Sequence[float], error: np.ndarray
+) -> None:
     low_95, low_68, middle, high_68, high_95 = np.percentile(
         replicated, [2.5, 16.0, 50.0, 84.0, 97.5], axis=0
     )  # fmt: skip

@@ -11,8 +11,9 @@ from starkiln.constants import T_SUN
 from starkiln.errors import InputError
 from starkiln.interiors import zero_age_luminosity, zero_age_radius
 from starkiln.report._quantities import printed
-from starkiln.report._style import ACCENT, BAND, INK, MODEL, PALE, QUIET, drawing
+from starkiln.report._style import ACCENT, BAND, INK, MODEL, QUIET, drawing
 from starkiln.report._text import drawable, plain_line
+from starkiln.report._ticks import round_ticks
 from starkiln.report._view import FitView, run_view
 
 _RADII = (0.01, 0.03, 0.1, 0.3, 1.0, 3.0, 10.0, 30.0, 100.0, 300.0, 1000.0)
@@ -60,23 +61,24 @@ def hr_plot(run: Any, *, ax: Any = None, width: str | float = "one") -> Any:
         _zero_age(axes)
         for row in rows:
             _hr_star(axes, results, row, run.draws(int(row) + 1))
-        _temperature_ticks(axes.xaxis, limits[0])
+        round_ticks(axes.xaxis, limits[0])
         axes.set_xlabel(printed("temperature").label)
         axes.set_ylabel(printed("luminosity").label)
         missing = len(results) - len(rows)
-        axes.set_title(f"{len(rows)} stars" + (f", {missing} without luminosity" if missing else ""))
-        axes.legend(loc="lower left")
+        title = f"{len(rows)} stars" + (f", {missing} without luminosity" if missing else "")
+        axes.set_title(title, loc="left", fontsize="small")
+        axes.legend(loc="lower right", bbox_to_anchor=(1.0, 1.0), borderaxespad=0.1)
     return axes
 
 
 def misfit_plot(run: Any, *, ax: Any = None, width: str | float = "one") -> Any:
     """Draw how far every band lies from the fits, over all stars.
 
-    Box: median, 16th and 84th percentile of (observed - model)/model in per cent;
-    whiskers: 2.5th and 97.5th; points: each star. The error of the median, 1.25
-    standard errors, is the notch. A median far from 0 in one band, whatever the
+    Box: 16th to 84th percentile of (observed - model)/model in per cent; line: 2.5th
+    to 97.5th; points: each star. The thick dash is the median, with its standard
+    error (1.25 s/sqrt(n)) as a bar with caps. A median far from 0 in one band, whatever the
     stars, is the mark of a wrong zero point (or of a feature that the emitter
-    lacks).
+    lacks). In brackets: number of stars.
 
     Parameters
     ----------
@@ -142,16 +144,23 @@ def _residual_box(ax: Any, place: int, values: np.ndarray) -> None:
     ax.plot(place + shift, values, ".", color=INK, ms=1.5, alpha=0.5, zorder=4)
 
 
+def numbers(column: Any) -> np.ndarray:
+    """Return a column or an array as floats, NaN where it is masked."""
+    return np.ma.filled(np.ma.asarray(getattr(column, "value", column), dtype=float), np.nan)
+
+
 def _rows_with(results: Any, *keys: str) -> np.ndarray:
     if any(key not in results.colnames for key in keys):
         return np.array([], dtype=int)
-    columns = [np.ma.filled(np.ma.asarray(results[key], dtype=float), np.nan) for key in keys]
+    columns = [numbers(results[key]) for key in keys]
     return np.flatnonzero(np.all([np.isfinite(c) & (c > 0.0) for c in columns], axis=0))
 
 
 def _hr_limits(results: Any, rows: np.ndarray) -> tuple[tuple[float, float], tuple[float, float]]:
     ends = {
-        key: np.array([np.asarray(results[f"{key}{end}"][rows], dtype=float) for end in ("_lo", "_hi")])
+        key: np.array(
+            [np.asarray(results[f"{key}{end}"][rows], dtype=float) for end in ("_lo", "_hi")]
+        )
         for key in ("temperature", "luminosity")
     }
     cool, hot = ends["temperature"].min() / 1.15, ends["temperature"].max() * 1.25
@@ -194,12 +203,15 @@ def _radius_lines(ax: Any, temperatures: tuple[float, float], lums: tuple[float,
     for radius in _RADII:
         line = radius**2 * (np.array([cool, hot]) / T_SUN.value) ** 4
         ax.plot([cool, hot], line, color=QUIET, lw=0.5, ls=":", zorder=1)
-        # Named at the cool edge, or where the line leaves through the foot.
-        at = cool * 1.02 if line[0] > lums[0] * 1.3 else cool * (lums[0] * 1.3 / line[0]) ** 0.25
-        height = radius**2 * (at / T_SUN.value) ** 4
-        if at < hot / 1.1 and lums[0] < height < lums[1] / 1.5:
-            ax.text(at, height, f"{radius:g} R$_\\odot$", color=QUIET, fontsize=5.5, ha="right",
-                    va="bottom", zorder=2)  # fmt: skip
+        name = f"{radius:g} R$_\\odot$"
+        # At the hot edge where the line reaches it, else at the cool edge.
+        hot_end = lums[0] * 1.3 < line[1] < lums[1] / 1.3
+        if hot_end or lums[0] * 1.3 < line[0] < lums[1] / 1.3:
+            ax.annotate(
+                name, (hot, line[1]) if hot_end else (cool, line[0]),
+                (3, -3) if hot_end else (-3, 1), textcoords="offset points", color=QUIET,
+                fontsize=5.5, ha="left" if hot_end else "right", va="top" if hot_end else "bottom",
+            )  # fmt: skip
 
 
 def _zero_age(ax: Any) -> None:
@@ -207,14 +219,3 @@ def _zero_age(ax: Any) -> None:
     luminosity, radius = zero_age_luminosity(mass), zero_age_radius(mass)
     temperature = T_SUN.value * (luminosity / radius**2) ** 0.25
     ax.plot(temperature, luminosity, color=ACCENT, lw=1.6, zorder=2, label="zero-age main sequence")
-
-
-def _temperature_ticks(axis: Any, limits: tuple[float, float]) -> None:
-    from matplotlib.ticker import FixedLocator, FuncFormatter, NullFormatter
-
-    marks = [2500, 3000, 4000, 5000, 6000, 8000, 10000, 15000, 20000, 30000, 50000]
-    if limits[1] / limits[0] > 5.0:
-        marks = [3000, 5000, 10000, 20000, 50000]
-    axis.set_major_locator(FixedLocator([m for m in marks if limits[0] <= m <= limits[1]]))
-    axis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:.0f}"))
-    axis.set_minor_formatter(NullFormatter())

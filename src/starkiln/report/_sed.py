@@ -11,6 +11,7 @@ from starkiln.errors import InputError
 from starkiln.report._spread import spread
 from starkiln.report._style import ACCENT, BAND, INK, MODEL, PALE, QUIET, new_figure
 from starkiln.report._text import drawable, plain_line, star_label
+from starkiln.report._ticks import round_ticks
 from starkiln.report._view import FitView, Measurement, view_of
 
 _PERCENTILES = (2.5, 16.0, 50.0, 84.0, 97.5)
@@ -225,15 +226,8 @@ def _residual_panel(
 
 
 def _wavelength_axis(ax: Any, limits: tuple[float, float]) -> None:
-    from matplotlib.ticker import FixedLocator, FuncFormatter, MaxNLocator, NullFormatter
-
-    marks = np.outer(10.0 ** np.arange(-2, 4), [1, 2, 5]).ravel()
-    if limits[1] / limits[0] < 4.0:
-        marks = np.asarray(MaxNLocator(4).tick_values(*limits))
     ax.set_xlim(*limits)
-    ax.xaxis.set_major_locator(FixedLocator([m for m in marks if limits[0] <= m <= limits[1]]))
-    ax.xaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
-    ax.xaxis.set_minor_formatter(NullFormatter())
+    round_ticks(ax.xaxis, limits)
     ax.set_xlabel("wavelength (\N{MICRO SIGN}m)")
 
 

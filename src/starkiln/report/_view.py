@@ -84,7 +84,9 @@ class FitView:
 
     def interval(self, key: str) -> tuple[float, float, float]:
         """Return median, 16th and 84th percentile: those of the results, else of the draws."""
-        found = tuple(float(self.summary.get(f"{key}{end}", math.nan)) for end in ("", "_lo", "_hi"))
+        found = tuple(
+            float(self.summary.get(f"{key}{end}", math.nan)) for end in ("", "_lo", "_hi")
+        )
         if all(math.isfinite(value) for value in found):
             return found[0], found[1], found[2]
         low, middle, high = np.percentile(self.draws[key], [16.0, 50.0, 84.0])
@@ -93,13 +95,14 @@ class FitView:
     def need_draws(self, what: str) -> None:
         """Raise `InputError` where the run kept no posterior draws of this star."""
         if not self.draws:
-            status = str(self.summary.get("status", ""))
-            reason = (
-                f"it was rejected: {self.summary.get('message', '')}"
-                if status == "rejected"
-                else "the run kept no posterior draws; fit again with --draws 256"
-            )
-            raise InputError(f"no {what} of star {self.name!r} (row {self.row}): {reason}")
+            raise InputError(self.why_no_draws(what))
+
+    def why_no_draws(self, what: str) -> str:
+        """Return why there is no `what` of this star."""
+        reason = "the run kept no posterior draws; fit again with --draws 256"
+        if self.summary.get("status") == "rejected":
+            reason = f"it was rejected: {self.summary.get('message', '')}"
+        return f"no {what} of star {self.name!r} (row {self.row}): {reason}"
 
 
 def view_of(fit: Any) -> FitView:
