@@ -130,6 +130,10 @@ class FakeRun:
         for key in table.colnames:
             if table[key].dtype.kind == "f":
                 table[key] = np.ma.masked_invalid(table[key])
+            table[key].description = f"what {key} is"
+        for key in QUANTITIES:
+            for end in ("", "_lo", "_hi"):
+                table[f"{key}{end}"].unit = UNITS.get(key)
         return table
 
     def _result(self, row):
@@ -155,6 +159,10 @@ QUANTITIES = (
     "temperature", "angular_diameter", "av", "misfit", "bolometric_flux", "distance", "radius",
     "luminosity",
 )  # fmt: skip
+UNITS = {
+    "temperature": "K", "angular_diameter": "mas", "av": "mag", "bolometric_flux": "W / m2",
+    "distance": "pc", "radius": "solRad", "luminosity": "solLum",
+}  # fmt: skip
 MESSAGES = {
     "ok": "no extinction given: A_V = 0",
     "unconverged": "the ceiling of 20000 steps was reached with n_eff 140 of 1000",
@@ -168,7 +176,7 @@ META = {
         "engine": "ensemble",
         "seed": 1,
         "settings": Settings().as_dict(),
-        "versions": {"starkiln": "0.1.0", "numpy": "2.4.0", "emcee": "3.1.6"},
+        "versions": {"starkiln": "0.1.0", "numpy": "2.4.0", "dust_extinction": "1.7"},
     },
     "started": "2026-01-01T00:00:00+00:00",
     "finished": "2026-01-01T00:01:00+00:00",

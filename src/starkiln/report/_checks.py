@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Mapping
 from typing import Any
 
 import numpy as np
@@ -144,7 +144,7 @@ def _replicate(
 
 
 def _draw_predictive(
-    ax: Any, replicated: np.ndarray, observed: Sequence[float], error: np.ndarray
+    ax: Any, replicated: np.ndarray, observed: np.ndarray, error: np.ndarray
 ) -> None:
     low_95, low_68, middle, high_68, high_95 = np.percentile(
         replicated, [2.5, 16.0, 50.0, 84.0, 97.5], axis=0

@@ -8,9 +8,9 @@ import numpy as np
 
 from starkiln.errors import InputError
 from starkiln.interiors import standard_model
-from starkiln.report._sample import numbers
 from starkiln.report._style import ACCENT, INK, MODEL, PALE, QUIET, drawing, new_figure
 from starkiln.report._ticks import round_ticks
+from starkiln.report._view import numbers
 
 
 def temperature_figure(

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
+from functools import partial
 from pathlib import Path
 from typing import Any
 
@@ -87,7 +88,7 @@ def write_figures(
     options = {} if width is None else {"width": width}
     for kind in (kind for kind in RUN_KINDS if kind in kinds):
         path = folder / f"{kind}.{image}"
-        yield _draw(path, lambda k=kind: _run_figure(k, run, catalogue, options))
+        yield _draw(path, partial(_run_figure, kind, run, catalogue, options))
     star_kinds = [kind for kind in STAR_KINDS if kind in kinds]
     for row in (rows or range(1, len(run.results) + 1)) if star_kinds else ():
         view = run_view(run, row)
@@ -98,7 +99,7 @@ def write_figures(
             view = _fitted_again(run, row, catalogue)
         for kind in star_kinds:
             path = folder / f"{file_stem(view.name, row)}_{kind}.{image}"
-            yield _draw(path, lambda k=kind, v=view: STAR_KINDS[k](v, **options))
+            yield _draw(path, partial(STAR_KINDS[kind], view, **options))
 
 
 def _check(run: Run, kinds: Sequence[str], catalogue: Catalogue | None) -> None:

@@ -14,7 +14,7 @@ from starkiln.report._quantities import printed
 from starkiln.report._style import ACCENT, BAND, INK, MODEL, QUIET, drawing
 from starkiln.report._text import drawable, plain_line
 from starkiln.report._ticks import round_ticks
-from starkiln.report._view import FitView, run_view
+from starkiln.report._view import FitView, numbers, run_view
 
 _RADII = (0.01, 0.03, 0.1, 0.3, 1.0, 3.0, 10.0, 30.0, 100.0, 300.0, 1000.0)
 #: Draws that a star's median model is taken from.
@@ -142,11 +142,6 @@ def _residual_box(ax: Any, place: int, values: np.ndarray) -> None:
     # Golden-ratio steps spread the points evenly without chance.
     shift = (np.arange(len(values)) * 0.618 % 1.0 - 0.5) * 0.5
     ax.plot(place + shift, values, ".", color=INK, ms=1.5, alpha=0.5, zorder=4)
-
-
-def numbers(column: Any) -> np.ndarray:
-    """Return a column or an array as floats, NaN where it is masked."""
-    return np.ma.filled(np.ma.asarray(getattr(column, "value", column), dtype=float), np.nan)
 
 
 def _rows_with(results: Any, *keys: str) -> np.ndarray:

@@ -8,6 +8,15 @@ import unicodedata
 from functools import lru_cache
 from typing import Any
 
+_GREEK_NAMES = (
+    "alpha", "beta", "gamma", "delta", "epsilon", "zeta", "eta", "theta", "iota", "kappa",
+    "lambda", "mu", "nu", "xi", "omicron", "pi", "rho", "sigma", "sigma", "tau", "upsilon",
+    "phi", "chi", "psi", "omega",
+)  # fmt: skip
+#: Greek letter -> its English name, capitalised as the letter is.
+GREEK = {chr(0x3B1 + place): name for place, name in enumerate(_GREEK_NAMES)} | {
+    chr(0x391 + place): name.capitalize() for place, name in enumerate(_GREEK_NAMES)
+}
 #: Names that Windows keeps for devices, whatever their ending.
 _DEVICES = {"con", "prn", "aux", "nul"} | {
     f"{kind}{n}" for kind in ("com", "lpt") for n in range(10)
@@ -45,6 +54,20 @@ def file_stem(name: object, row: int) -> str:
     if plain.lower() in _DEVICES:
         plain += "_"
     return f"{row:05d}_{plain}" if plain else f"{row:05d}"
+
+
+def ascii_text(text: object) -> str:
+    """Return one line of ASCII: Greek letters spelled, accents left away, else `?`."""
+    return "".join(map(_ascii_letter, plain_line(text, 400)))
+
+
+def _ascii_letter(letter: str) -> str:
+    if letter.isascii():
+        return letter
+    plain = unicodedata.normalize("NFKD", letter)
+    if plain[0] in GREEK:
+        return GREEK[plain[0]]
+    return plain.encode("ascii", "ignore").decode() or "?"
 
 
 def drawable(text: str) -> str:

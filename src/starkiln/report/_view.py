@@ -217,6 +217,11 @@ def plain_text(cell: Any) -> str:
     return "" if np.ma.is_masked(cell) else str(cell)
 
 
+def numbers(column: Any) -> np.ndarray:
+    """Return a column or an array as floats, NaN where it is masked."""
+    return np.ma.filled(np.ma.asarray(getattr(column, "value", column), dtype=float), np.nan)
+
+
 def _number(cell: Any) -> float:
     return math.nan if np.ma.is_masked(cell) else float(cell)
 
