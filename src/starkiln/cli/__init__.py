@@ -19,6 +19,7 @@ from starkiln.errors import StarkilnError
 COMMANDS: dict[str, tuple[str, str]] = {
     "inspect": ("starkiln.cli.inspect", "what a catalogue holds, what is unusable, and why"),
     "fit": ("starkiln.cli.fit", "fit a catalogue: temperatures, diameters, radii, luminosities"),
+    "figures": ("starkiln.cli.figures", "draw the figures of a run"),
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
     "bands": ("starkiln.cli.bands", "what is known of passbands, with sources"),
     "convert": ("starkiln.cli.convert", "photometry from one unit or band to another"),

@@ -1,0 +1,56 @@
+"""What the observer looks at and what goes into the paper: figures, tables, one page.
+
+Functions ending in `_figure` draw several panels and return the figure; those
+ending in `_plot` take `ax=` and return the axes. None of them needs a display.
+"""
+
+from starkiln.report._chain import autocorrelation_plot, chain_figure
+from starkiln.report._checks import predictive_plot, prior_figure
+from starkiln.report._comparisons import pressure_plot, temperature_figure
+from starkiln.report._corner import corner_figure
+from starkiln.report._files import CATALOGUE_KINDS, RUN_KINDS, STAR_KINDS, Drawn, write_figures
+from starkiln.report._latex import deluxetable, latex_table
+from starkiln.report._provenance import provenance, provenance_text
+from starkiln.report._references import Reference, bibtex, references
+from starkiln.report._samp import send_table
+from starkiln.report._sample import hr_plot, misfit_plot
+from starkiln.report._sed import sed_figure
+from starkiln.report._style import image_bytes, save_figure, style
+from starkiln.report._tables import machine_readable, results_table, write_tables
+from starkiln.report._view import FitView, Measurement, run_view, view_of
+
+__all__ = [
+    "CATALOGUE_KINDS",
+    "RUN_KINDS",
+    "STAR_KINDS",
+    "Drawn",
+    "FitView",
+    "Measurement",
+    "Reference",
+    "autocorrelation_plot",
+    "bibtex",
+    "chain_figure",
+    "corner_figure",
+    "deluxetable",
+    "hr_plot",
+    "image_bytes",
+    "latex_table",
+    "machine_readable",
+    "misfit_plot",
+    "predictive_plot",
+    "pressure_plot",
+    "prior_figure",
+    "provenance",
+    "provenance_text",
+    "references",
+    "results_table",
+    "run_view",
+    "save_figure",
+    "sed_figure",
+    "send_table",
+    "style",
+    "temperature_figure",
+    "view_of",
+    "write_figures",
+    "write_tables",
+]
