@@ -44,7 +44,7 @@ def main(argv: Sequence[str] | None = None) -> int:
         parser.print_help(sys.stderr)
         return 2
     try:
-        return int(args.run(args))
+        return int(args.execute(args))
     except StarkilnError as error:
         sys.stderr.write(f"starkiln {args.command}: {error}\n")
         return error.exit_code
@@ -72,5 +72,5 @@ def _parser(words: Sequence[str]) -> argparse.ArgumentParser:
         if name == chosen:
             module = import_module(module_name)
             module.configure(command)
-            command.set_defaults(run=module.run)
+            command.set_defaults(execute=module.run)
     return parser
