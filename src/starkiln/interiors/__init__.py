@@ -1,0 +1,26 @@
+"""Inside a star: polytropes, the standard model, and how much of the pressure is light."""
+
+from starkiln.interiors._polytropes import Polytrope, PolytropeProfile
+from starkiln.interiors._ratios import PressureRatio, pressure_ratio
+from starkiln.interiors._standard import (
+    StandardProfile,
+    central_light_limit,
+    standard_mass,
+    standard_model,
+    standard_profile,
+)
+from starkiln.interiors._zero_age import zero_age_luminosity, zero_age_radius
+
+__all__ = [
+    "Polytrope",
+    "PolytropeProfile",
+    "PressureRatio",
+    "StandardProfile",
+    "central_light_limit",
+    "pressure_ratio",
+    "standard_mass",
+    "standard_model",
+    "standard_profile",
+    "zero_age_luminosity",
+    "zero_age_radius",
+]
