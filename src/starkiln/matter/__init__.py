@@ -9,14 +9,18 @@ from starkiln.matter._composition import (
     hydrogen_of_metals,
 )
 from starkiln.matter._scattering import eddington_factor, thomson_opacity
+from starkiln.matter._state import GasState, gas_density, gas_state
 
 __all__ = [
     "MIXTURES",
     "Composition",
+    "GasState",
     "composition",
     "composition_from_abundances",
     "eddington_factor",
     "element_weights",
+    "gas_density",
+    "gas_state",
     "hydrogen_of_metals",
     "thomson_opacity",
 ]
