@@ -1,5 +1,5 @@
 """Ideal quantum gases and their integrals."""
 
-from starkiln.gases._fermi_dirac import FermiMoments, fermi_dirac, fermi_moments
+from starkiln.gases._fermi_dirac import FermiMoments, fermi_dirac, fermi_moments, fermi_number
 
-__all__ = ["FermiMoments", "fermi_dirac", "fermi_moments"]
+__all__ = ["FermiMoments", "fermi_dirac", "fermi_moments", "fermi_number"]

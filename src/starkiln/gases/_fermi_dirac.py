@@ -102,6 +102,12 @@ def fermi_moments(eta: Any, theta: Any) -> FermiMoments:
     return FermiMoments(*_integrate(eta, theta, _moments))
 
 
+def fermi_number(eta: Any, theta: Any) -> tuple[np.ndarray, np.ndarray]:
+    """Return `number` and `edge_0` of `fermi_moments` alone: the number and its slope by eta."""
+    number, slope = _integrate(eta, theta, _numbers)
+    return number, slope
+
+
 _Kernel = Callable[[np.ndarray, np.ndarray, np.ndarray, np.ndarray], list[np.ndarray]]
 
 
@@ -114,6 +120,13 @@ def _moments(x: np.ndarray, y: np.ndarray, s: np.ndarray, theta: np.ndarray) -> 
     edge = states * small / (1.0 + small) ** 2
     disorder = states * (np.log1p(small) + a * small / (1.0 + small))
     return [filled, x * s**3 * f, x * filled, disorder, edge, y * edge, y**2 * edge]
+
+
+def _numbers(x: np.ndarray, y: np.ndarray, s: np.ndarray, theta: np.ndarray) -> list[np.ndarray]:
+    small = np.exp(-np.minimum(np.abs(y), 745.0))
+    inverse = 1.0 / (1.0 + small)
+    states = s * (1.0 + theta * x) * inverse
+    return [states * np.where(y > 0.0, small, 1.0), states * small * inverse]
 
 
 def _occupation(y: np.ndarray) -> np.ndarray:

@@ -9,6 +9,7 @@ from starkiln.interiors._standard import (
     standard_model,
     standard_profile,
 )
+from starkiln.interiors._structure import StructureModel, structure
 from starkiln.interiors._zero_age import zero_age_luminosity, zero_age_radius
 
 __all__ = [
@@ -16,11 +17,13 @@ __all__ = [
     "PolytropeProfile",
     "PressureRatio",
     "StandardProfile",
+    "StructureModel",
     "central_light_limit",
     "pressure_ratio",
     "standard_mass",
     "standard_model",
     "standard_profile",
+    "structure",
     "zero_age_luminosity",
     "zero_age_radius",
 ]

@@ -9,7 +9,7 @@ import numpy as np
 
 from starkiln.constants import K_B, M_E, C, H
 from starkiln.errors import ConvergenceError
-from starkiln.gases import fermi_moments
+from starkiln.gases import fermi_moments, fermi_number
 
 _REST_J = M_E.value * C.value**2
 #: 8 pi sqrt(2) (m c/h)^3: states per volume.
@@ -107,13 +107,12 @@ def _paired(eta: np.ndarray, theta: np.ndarray) -> np.ndarray:
 
 def _excess(eta: np.ndarray, theta: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     """Return the dimensionless excess of electrons and its derivative by eta."""
-    minus = fermi_moments(eta, theta)
-    number, slope = minus.number.copy(), minus.edge_0.copy()
+    number, slope = fermi_number(eta, theta)
     some = _paired(eta, theta)
     if np.any(some):
-        plus = fermi_moments(-eta[some] - 2.0 / theta[some], theta[some])
-        number[some] -= plus.number
-        slope[some] += plus.edge_0
+        positrons, rise = fermi_number(-eta[some] - 2.0 / theta[some], theta[some])
+        number[some] -= positrons
+        slope[some] += rise
     return number, slope
 
 
@@ -140,7 +139,10 @@ def _solve_eta(target: np.ndarray, theta: np.ndarray, guess: np.ndarray | None) 
         new = e + step
         new = np.where(new <= floor[active], 0.5 * (e + floor[active]), new)
         eta[active] = new
-        active = active[np.abs(new - e) > 3e-13 * np.maximum(1.0, np.abs(new))]
+        # The error left is the square of the step, over the distance from the floor.
+        quadratic = 2e-8 * np.minimum(1.0, new - floor[active])
+        enough = np.maximum(quadratic, 3e-13 * np.maximum(1.0, np.abs(new)))
+        active = active[np.abs(new - e) > enough]
         if active.size == 0:
             return eta
     raise ConvergenceError(
