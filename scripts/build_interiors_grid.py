@@ -28,6 +28,7 @@ MASSES = np.geomspace(1.6, 120.0, 25)
 METALS = np.geomspace(1e-3, 0.03, 7)
 STAGES = 29
 SHIFT, LAST = 0.03, 0.0075
+MOST_MISSING = 10
 #: Of the zero-age models, those kept as first guesses for new ones.
 KEPT_MASSES, KEPT_METALS = slice(0, None, 3), slice(0, None, 3)
 
@@ -38,12 +39,26 @@ def stages() -> np.ndarray:
 
 
 def read_off(epochs: list, hydrogen: float) -> np.ndarray:
-    """Return the quantities at the stages; NaN beyond the last model found."""
+    """Return the quantities at the stages; see `extend` for those past the last model."""
     s = np.array([epoch.hydrogen for epoch in epochs]) / hydrogen
     values = np.array([summary(epoch) for epoch in epochs])
     if len(epochs) < 4:
         return np.full((STAGES, values.shape[1]), np.nan)
-    return PchipInterpolator(s[::-1], values[::-1], extrapolate=False)(stages())
+    return extend(PchipInterpolator(s[::-1], values[::-1], extrapolate=False)(stages()))
+
+
+def extend(values: np.ndarray) -> np.ndarray:
+    """Return values with the stages past the last model continued along s.
+
+    Only the largest and most metal-rich stars need it, whose envelopes swell to the limit
+    of light at the very end; a track that lacks more than `MOST_MISSING` stays NaN.
+    """
+    missing = int(np.isnan(values[:, 0]).sum())
+    if missing and missing <= MOST_MISSING:
+        s, last = stages(), STAGES - missing - 1
+        slope = (values[last] - values[last - 1]) / (s[last] - s[last - 1])
+        values[last + 1 :] = values[last] + slope * (s[last + 1 :, None] - s[last])
+    return values
 
 
 def build() -> tuple[np.ndarray, np.ndarray]:

@@ -4,57 +4,50 @@ from __future__ import annotations
 
 import argparse
 import sys
+from pathlib import Path
 from typing import Any
 
+from starkiln.cli._options import quantity
 from starkiln.errors import InputError
-from starkiln.interiors import PressureRatio, pressure_ratio
-
-#: Column -> (unit, what it is); the order of the printed table.
-_COLUMNS = {
-    "mass": ("solMass", "Mass"),
-    "mu": ("", "Mean particle weight in atomic mass units"),
-    "radiation_fraction": ("", "P_rad/P, ratio of the volume integrals"),
-    "radiation_to_gas": ("", "P_rad/P_gas, ratio of the volume integrals"),
-    "radiation_fraction_core": ("", "P_rad/P at the centre"),
-    "radiation_to_gas_core": ("", "P_rad/P_gas at the centre"),
-    "gamma_e": ("", "Eddington factor of electron scattering at the surface"),
-    "radius": ("solRad", "Radius of the model"),
-    "luminosity": ("solLum", "Luminosity of the model"),
-    "temperature": ("K", "Effective temperature of the model"),
-}
 
 _FORMATS = {"ecsv": "ascii.ecsv", "votable": "votable", "csv": "ascii.csv"}
 
-_EPILOG = """\
-ratios   `radiation_fraction` is P_rad over the total pressure, `radiation_to_gas` P_rad over
-         the gas pressure, each the ratio of the integrals over the star's volume; `_core` the
-         same at the centre; `gamma_e` the push of light on free electrons over gravity at the
-         surface. The standard model takes the same share of light everywhere.
+_NOTES = """\
+By --mass: homogeneous stars. --model structure (default) solves all four equations of
+structure, 1.6 to 120 solMass; --model standard is Eddington's, of any mass, in which light
+carries the same share of the pressure everywhere.
+
+By TABLE: targets with the columns temperature (K) and luminosity (solLum) or radius (solRad),
+or mass (solMass) alone; where known also logg, mass (dynamical), feh, name, and the error of
+each under e_. Where radius and temperature are given, luminosity follows from them, with its
+covariance. By --run: the stars of a run with their posterior draws of temperature and
+luminosity; --targets adds logg, mass or feh by name. Mass, age and ratios are then drawn
+jointly from main-sequence models; _lo and _hi are the 16th and 84th percentiles.
+
+radiation_fraction is P_rad over the total pressure, radiation_to_gas P_rad over the gas
+pressure, each the ratio of the integrals over the star's volume; _core is the same at the
+centre; gamma_e is the push of light on free electrons over gravity at the surface.
+
+Exit code 3: some targets are off the grid of models or rejected; their message says why.
 """
 
 
 def configure(parser: argparse.ArgumentParser) -> None:
     """Declare the options."""
-    parser.epilog = _EPILOG
+    parser.epilog = _NOTES
+    parser.add_argument("table", nargs="?", metavar="TABLE", help="table of targets, any format")
+    parser.add_argument("--run", metavar="DIR", dest="folder", help="a finished run of `fit`")
+    parser.add_argument("--mass", nargs="+", metavar="M", help="mass, solMass")
+    parser.add_argument("--targets", metavar="TABLE", help="with --run: logg, mass, feh by name")
+    parser.add_argument("--hydrogen", type=float, metavar="X", help="with --mass (default 0.70)")
+    parser.add_argument("--metals", type=float, metavar="Z", help="with --mass (default 0.02)")
     parser.add_argument(
-        "--mass",
-        nargs="+",
-        required=True,
-        metavar="M",
-        help="mass, in solMass unless it has a unit",
+        "--mu", type=float, metavar="MU", help="mean particle weight, with --model standard"
     )
     parser.add_argument(
-        "--hydrogen", type=float, default=0.70, metavar="X", help="mass fraction (default 0.70)"
+        "--model", choices=["structure", "standard"], help="with --mass (default structure)"
     )
-    parser.add_argument(
-        "--metals", type=float, default=0.02, metavar="Z", help="mass fraction (default 0.02)"
-    )
-    parser.add_argument(
-        "--mu", type=float, metavar="MU", help="mean particle weight in place of that of X and Z"
-    )
-    parser.add_argument(
-        "--model", choices=["standard"], default="standard", help="Eddington's standard model"
-    )
+    parser.add_argument("--seed", type=int, default=0, metavar="N", help="default 0")
     parser.add_argument(
         "--format", choices=[*_FORMATS, "fits", "text"], default="text", help="default text"
     )
@@ -62,55 +55,87 @@ def configure(parser: argparse.ArgumentParser) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Print the table and return the exit code."""
-    ratios = pressure_ratio(
-        _masses(args.mass),
-        hydrogen=args.hydrogen,
-        metals=args.metals,
-        mu=args.mu,
-        model=args.model,
-    )
-    _print_table(_table(ratios), args.format)
-    return 0
+    sources = {"TABLE": args.table, "--run": args.folder, "--mass": args.mass}
+    given = [name for name, value in sources.items() if value is not None]
+    if len(given) != 1:
+        raise InputError(
+            f"give one of --mass, TABLE and --run, not {' and '.join(given) or 'none'}"
+        )
+    _check_companions(args, given[0])
+    if args.mass is not None:
+        table = _by_mass(args)
+    elif args.table is not None:
+        table = _by_table(args)
+    else:
+        table = _by_run(args)
+    _print_table(table, args.format)
+    return 3 if "status" in table.colnames and any(table["status"] != "ok") else 0
 
 
-def _masses(words: list[str]) -> list[float]:
-    from astropy import units as u
-
-    masses = []
-    for word in words:
-        try:
-            value = u.Quantity(word)
-            masses.append(float(value.value if value.unit == u.one else value.to_value(u.solMass)))
-        except (TypeError, ValueError) as error:
+def _check_companions(args: argparse.Namespace, source: str) -> None:
+    options = ("hydrogen", "metals", "mu", "model")
+    if source != "--mass":
+        wrong = [name for name in options if getattr(args, name) is not None]
+        if wrong:
             raise InputError(
-                f"--mass {word} is not a mass: give a number in solMass, or one with a unit of "
-                f"mass such as 20solMass"
-            ) from error
-    return masses
+                f"--{wrong[0]} goes with --mass only; the composition of {source} follows from "
+                f"its column feh"
+            )
+    if args.targets is not None and source != "--run":
+        raise InputError("--targets goes with --run only")
 
 
-def _table(ratios: PressureRatio) -> Any:
-    from astropy.table import Table
+def _by_mass(args: argparse.Namespace) -> Any:
+    from starkiln.derived import ratio_table
+    from starkiln.interiors import pressure_ratio
 
-    table = Table()
-    table["name"] = [f"{mass:g} solMass" for mass in ratios.mass.value]
-    table["name"].description = "Name"
-    for name, (unit, description) in _COLUMNS.items():
-        column = getattr(ratios, name)
-        if column is not None:
-            table[name] = getattr(column, "value", column)
-            table[name].unit = unit or None
-            table[name].description = description
-    return table
+    ratios = pressure_ratio(
+        [quantity(word, "solMass", "mass") for word in args.mass],
+        hydrogen=0.70 if args.hydrogen is None else args.hydrogen,
+        metals=0.02 if args.metals is None else args.metals,
+        mu=args.mu,
+        model=args.model or "structure",
+    )
+    return ratio_table(ratios)
+
+
+def _by_table(args: argparse.Namespace) -> Any:
+    from starkiln.derived import pressure_table
+
+    return pressure_table(_columns(args.table), seed=args.seed)
+
+
+def _by_run(args: argparse.Namespace) -> Any:
+    from starkiln.derived import pressure_table_of_draws
+    from starkiln.runner import open_run
+
+    done = open_run(Path(args.folder))
+    names = [str(name) for name in done.results["name"]]
+    draws = [done.draws(row) for row in range(1, len(names) + 1)]
+    known = None if args.targets is None else _columns(args.targets)
+    return pressure_table_of_draws(names, draws, known, seed=args.seed)
+
+
+def _columns(path: str) -> dict[str, list[Any]]:
+    from starkiln.derived import PRESSURE_INPUTS
+    from starkiln.observations import read_columns
+
+    wanted = {"name": ""}
+    for name, unit in PRESSURE_INPUTS.items():
+        wanted |= {name: unit, f"e_{name}": unit}
+    columns = read_columns(path, wanted)
+    if not set(columns) & set(PRESSURE_INPUTS):
+        raise InputError(f"{path}: no column of {', '.join(PRESSURE_INPUTS)}")
+    return columns
 
 
 def _print_table(table: Any, form: str) -> None:
     if form == "text":
         for name in table.colnames[1:]:
-            table[name].format = ".6g"
-        sys.stdout.write(
-            "\n".join(table.pformat(max_lines=-1, max_width=-1, show_unit=True)) + "\n"
-        )
+            if table[name].dtype.kind == "f":
+                table[name].format = ".5g"
+        lines = table.pformat(max_lines=-1, max_width=-1, show_unit=True)
+        sys.stdout.write("\n".join(lines) + "\n")
     elif form == "fits":
         table.write(sys.stdout.buffer, format="fits")
     else:

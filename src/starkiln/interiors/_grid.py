@@ -109,6 +109,17 @@ class Grid:
         slope = self._values(np.stack([m, u, z], axis=-1), nu=(0, 1, 0))[..., 2]
         return np.maximum(slope, 0.0)
 
+    def stage_of_age(self, log_mass: Any, age_fraction: Any, log_metals: Any) -> np.ndarray:
+        """Return u of given age fraction, by bisection of the age's own spline."""
+        m, age, z = np.broadcast_arrays(log_mass, age_fraction, log_metals)
+        low, high = np.zeros(age.shape), np.ones(age.shape)
+        for _ in range(40):
+            middle = 0.5 * (low + high)
+            young = self._values(np.stack([m, middle, z], axis=-1))[..., 2] < age
+            low, high = np.where(young, middle, low), np.where(young, high, middle)
+        stage = 0.5 * (low + high)
+        return np.where(age <= 0.0, 0.0, np.where(age >= 1.0, 1.0, stage))
+
 
 @lru_cache(maxsize=1)
 def load_grid() -> Grid:

@@ -10,6 +10,7 @@ import numpy as np
 from starkiln._units import as_float
 from starkiln.constants import L_SUN, R_SUN
 from starkiln.errors import ConvergenceError, InputError
+from starkiln.interiors._grid import zero_age_starts
 from starkiln.interiors._henyey import Problem, Shells, relax
 from starkiln.interiors._start import (
     Start,
@@ -121,8 +122,18 @@ def structure(mass: Any, *, hydrogen: float | None = None, metals: float = 0.02)
         No model was found.
     """
     mass_sun, matter = checked(mass, hydrogen, metals)
-    problem, shells = solve_homogeneous(mass_sun, matter)
+    problem, shells = solve_homogeneous(mass_sun, matter, start=_nearest(mass_sun, matter))
     return _model(mass_sun, matter, problem, shells)
+
+
+def _nearest(mass_sun: float, matter: Composition) -> Start:
+    """Return the nearest of the shipped zero-age models."""
+    masses, metals, unknowns = zero_age_starts()
+    i = int(np.argmin(np.abs(np.log(metals / matter.metals))))
+    j = int(np.argmin(np.abs(np.log(masses / mass_sun))))
+    z = float(metals[i])
+    usual = composition(float(hydrogen_of_metals(z)), z)
+    return Start(float(masses[j]), usual, unknowns[i, j])
 
 
 def checked(mass: Any, hydrogen: float | None, metals: float) -> tuple[float, Composition]:
