@@ -23,6 +23,7 @@ COMMANDS: dict[str, tuple[str, str]] = {
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
     "bands": ("starkiln.cli.bands", "what is known of passbands, with sources"),
     "convert": ("starkiln.cli.convert", "photometry from one unit or band to another"),
+    "pressure": ("starkiln.cli.pressure", "radiation against gas pressure inside stars"),
 }
 
 _DESCRIPTION = (
