@@ -1,0 +1,11 @@
+"""Ideal quantum gases: any statistics, energy proportional to a power of momentum, any dimension.
+
+`IdealGas` gives states; `fermi`, `bose` and their inverses are the functions beneath.
+"""
+
+from starkiln.gases._ideal import IdealGas
+from starkiln.gases._inverse import bose_inverse, fermi_inverse
+from starkiln.gases._state import GasState
+from starkiln.gases._statistics import bose, fermi
+
+__all__ = ["GasState", "IdealGas", "bose", "bose_inverse", "fermi", "fermi_inverse"]
