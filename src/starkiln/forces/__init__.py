@@ -46,6 +46,7 @@ from starkiln.forces._sails import (
     sail_acceleration,
 )
 from starkiln.forces._starfield import StarField, star_field
+from starkiln.forces._sums import eddington_sums, grain_sums, sail_sums
 from starkiln.forces._surface import (
     ABSORBER,
     MIRROR,
@@ -54,6 +55,7 @@ from starkiln.forces._surface import (
     isotropic_wall_pressure,
     surface_pressure,
 )
+from starkiln.forces._surface_sums import light_sums, surface_sums
 
 __all__ = [
     "ABSORBER",
@@ -70,17 +72,20 @@ __all__ = [
     "eddington_factor",
     "eddington_luminosity",
     "eddington_mass",
+    "eddington_sums",
     "eddington_temperature",
     "electron_opacity",
     "equilibrium_temperature",
     "fly_sail",
     "force_coefficient",
     "grain_beta",
+    "grain_sums",
     "gravity_at",
     "irradiance",
     "isotropic_pressure",
     "isotropic_wall_pressure",
     "light_force",
+    "light_sums",
     "light_to_gravity",
     "lightness_number",
     "moving_acceleration",
@@ -91,7 +96,9 @@ __all__ = [
     "radiative_acceleration",
     "recoil",
     "sail_acceleration",
+    "sail_sums",
     "star_field",
     "surface_eddington_factor",
     "surface_pressure",
+    "surface_sums",
 ]
