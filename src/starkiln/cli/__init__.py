@@ -19,6 +19,8 @@ from starkiln.errors import StarkilnError
 COMMANDS: dict[str, tuple[str, str]] = {
     "fit": ("starkiln.cli.fit", "fit a catalogue: temperatures, diameters, radii, luminosities"),
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
+    "photons": ("starkiln.cli.photons", "blackbody radiation and the photon gas at a temperature"),
+    "force": ("starkiln.cli.force", "pressure and force of light: sail, grain, eddington, surface"),
 }
 
 _DESCRIPTION = (

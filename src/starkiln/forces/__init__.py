@@ -55,7 +55,7 @@ from starkiln.forces._surface import (
     isotropic_wall_pressure,
     surface_pressure,
 )
-from starkiln.forces._surface_sums import light_sums, surface_sums
+from starkiln.forces._surface_sums import light_sums, surface_sums, wall_sums
 
 __all__ = [
     "ABSORBER",
@@ -101,4 +101,5 @@ __all__ = [
     "surface_eddington_factor",
     "surface_pressure",
     "surface_sums",
+    "wall_sums",
 ]

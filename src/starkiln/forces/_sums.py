@@ -68,7 +68,9 @@ def eddington_sums(
         rows += [
             echo("mass", mass, "solMass"),
             _limit("eddington_luminosity", limit, "W", "4 pi G M c / kappa"),
-            _limit("eddington_luminosity", limit / L_SUN.value, "solLum", "4 pi G M c / kappa"),
+            _limit(
+                "eddington_luminosity_solar", limit / L_SUN.value, "solLum", "4 pi G M c / kappa"
+            ),
         ]
     if luminosity is not None:
         factor = eddington.eddington_factor(luminosity, mass, **matter)
@@ -147,11 +149,12 @@ def grain_sums(
         Answer("blowout_size", blowout, "um", "beta = (1 - e) / 2", _BURNS),
         Answer("black_grain_temperature", warmth, "K", "(F / 4 sigma)^(1/4)", "Stefan 1879"),
     ]
-    if np.all((beta > 0.0) & (beta < 1.0)):
-        years = drag_time(distance, beta, mass=mass).value
-        formula = "Poynting-Robertson time c r^2 / 4 G M beta"
-        rows.append(Answer("drag_time", years, "yr", formula, _BURNS))
-    return rows
+    # A grain beyond beta = 1 has no orbit to spiral from, one without force never spirals.
+    bound = (beta > 0.0) & (beta < 1.0)
+    years = drag_time(distance, np.where(bound, beta, 0.5), mass=mass).value
+    years = np.where(bound, years, np.where(beta > 0.0, np.nan, np.inf))
+    formula = "Poynting-Robertson time c r^2 / 4 G M beta"
+    return [*rows, Answer("drag_time", years, "yr", formula, _BURNS)]
 
 
 def sail_sums(

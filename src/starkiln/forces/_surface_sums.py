@@ -17,6 +17,7 @@ from starkiln.forces._surface import (
     ABSORBER,
     Surface,
     isotropic_pressure,
+    isotropic_wall_pressure,
     surface_pressure,
 )
 from starkiln.photons import Answer, echo
@@ -125,6 +126,15 @@ def surface_sums(
         rows.append(echo("mass", mass, "solMass"))
         rows.append(Answer("force_to_gravity", ratio, "", "force r^2 / G M m", _MAXWELL))
     return rows
+
+
+def wall_sums(temperature: Any, surface: Surface = ABSORBER) -> list[Answer]:
+    """Return the pressure of isotropic radiation (K) on a cold wall in front of it."""
+    pressure = isotropic_wall_pressure(temperature, surface).value
+    return [
+        *(echo(n, getattr(surface, n), "") for n in ("specular", "diffuse", "transmitted")),
+        Answer("cold_wall_pressure", pressure, "Pa", "u / 6 and what is sent back", _GAS),
+    ]
 
 
 def _star_rows(luminosity: Any, temperature: Any, radius: Any) -> tuple[list[Answer], np.ndarray]:

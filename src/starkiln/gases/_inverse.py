@@ -34,14 +34,14 @@ def fermi_inverse(order: float, value: np.ndarray) -> np.ndarray:
     ConvergenceError
         Not converged in 200 steps.
     """
-    value = np.asarray(value, dtype=float)
+    shape = np.shape(value)
     with np.errstate(divide="ignore"):
-        ln_value = np.asarray(log(value))
+        ln_value = log(np.atleast_1d(np.asarray(value, dtype=float)))
     eta = ln_value.copy()
     active = np.isfinite(eta)
     for _ in range(_ITERATIONS):
         if not np.any(active):
-            return eta[()]
+            return eta.reshape(shape)[()]
         here = eta[active]
         f = fermi(order, here)
         step = (ln_value[active] - log(f)) * f / fermi(order - 1.0, here)
@@ -56,13 +56,14 @@ def bose_inverse(order: float, value: np.ndarray) -> np.ndarray:
     Bisection in ln(-eta) narrowed by Newton's method, so that eta keeps its relative
     accuracy close to condensation. Arguments as for `fermi_inverse`.
     """
-    value = np.asarray(value, dtype=float)
+    shape = np.shape(value)
+    value = np.atleast_1d(np.asarray(value, dtype=float))
     critical = zeta(order) if order > 1.0 else math.inf
     result = np.where(value >= critical, 0.0, -math.inf)
     active = (value < critical) & (value > 0.0)
     if np.any(active):
         result[active] = _bose_root(order, value[active])
-    return result[()]
+    return result.reshape(shape)[()]
 
 
 def _bose_root(order: float, target: np.ndarray) -> np.ndarray:

@@ -11,6 +11,7 @@ polylogarithm). Any real order above -1 that the gases need, to about 2e-13 or b
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 from functools import lru_cache
 from itertools import pairwise
 
@@ -95,17 +96,18 @@ def zeta(order: float) -> float:
 def fermi_entropy(order: float, eta: np.ndarray) -> np.ndarray:
     """Return (order + 1) f_(order+1) - eta f_order, the entropy of fermions over k Z.
 
-    By its own series in a dense gas, where the two terms cancel. Its derivative by
-    eta is the same function of order - 1.
+    In a dense gas the two terms cancel, so it is integrated itself: the entropy of a
+    state of occupation n, -n ln n - (1 - n) ln(1 - n), over the density of states. Its
+    derivative by eta is the same function of order - 1.
     """
     shape = np.shape(eta)
     eta = _checked(order, eta)
     result = np.empty_like(eta)
-    dense = eta > SOMMERFELD_FROM
-    rest = eta[~dense]
-    result[~dense] = (order + 1.0) * fermi(order + 1.0, rest) - np.where(
-        np.isinf(rest), 0.0, rest * fermi(order, rest)
-    )
+    dilute, dense = eta < _SERIES_BELOW, eta > SOMMERFELD_FROM
+    between = ~(dilute | dense)
+    few = np.maximum(eta[dilute], -1e4)  # below, both terms are 0
+    result[dilute] = (order + 1.0) * fermi(order + 1.0, few) - few * fermi(order, few)
+    result[between] = _fermi_quadrature(order, eta[between], entropy=True)
     result[dense] = _sommerfeld(order + 1.0, eta[dense], entropy=True)
     return result.reshape(shape)[()]
 
@@ -141,7 +143,7 @@ def _sommerfeld(order: float, eta: np.ndarray, *, entropy: bool = False) -> np.n
     return total * eta**order
 
 
-def _fermi_quadrature(order: float, eta: np.ndarray) -> np.ndarray:
+def _fermi_quadrature(order: float, eta: np.ndarray, *, entropy: bool = False) -> np.ndarray:
     """Gauss-Jacobi up to the Fermi edge, where x^(s-1) is the weight, Gauss-Legendre beyond.
 
     The poles x = eta + i pi (2 k + 1) stand beside an end point, where Gaussian nodes
@@ -150,25 +152,30 @@ def _fermi_quadrature(order: float, eta: np.ndarray) -> np.ndarray:
     """
     from scipy.special import rgamma
 
-    derivative = order < 1.0
+    # The derivative of the entropy changes sign: there the singular weight is better.
+    derivative = order <= 0.0 if entropy else order < 1.0
     s = order + 1.0 if derivative else order
+    kernel = _KERNELS[entropy, derivative]
     edge = np.maximum(eta, 4.0)
     nodes, weights = _jacobi(s)
     total = np.zeros_like(eta)
     for node, weight in zip(nodes, weights, strict=True):
-        total = total + weight * _occupation(edge * node - eta, derivative)
+        total = total + weight * kernel(edge * node - eta)
     total = total * edge**s
     nodes, weights = _tail(s)
     for node, weight in zip(nodes, weights, strict=True):
         x = edge + node
-        total = total + weight * x ** (s - 1.0) * _occupation(x - eta, derivative)
+        total = total + weight * x ** (s - 1.0) * kernel(x - eta)
     return total * float(rgamma(s))
 
 
-def _occupation(y: np.ndarray, derivative: bool) -> np.ndarray:
-    if derivative:
-        return 0.25 / np.cosh(0.5 * y) ** 2
-    return 1.0 / (np.exp(y) + 1.0)
+#: (entropy, derivative by eta) -> the integrand beside x^(s-1), of y = x - eta.
+_KERNELS: dict[tuple[bool, bool], Callable[[np.ndarray], np.ndarray]] = {
+    (False, False): lambda y: 1.0 / (np.exp(y) + 1.0),
+    (False, True): lambda y: 0.25 / np.cosh(0.5 * y) ** 2,
+    (True, False): lambda y: np.log1p(np.exp(-np.abs(y))) + np.abs(y) / (np.exp(np.abs(y)) + 1.0),
+    (True, True): lambda y: 0.25 * y / np.cosh(0.5 * y) ** 2,
+}
 
 
 @lru_cache(maxsize=64)
@@ -197,11 +204,12 @@ def _bose_quadrature(order: float, eta: np.ndarray) -> np.ndarray:
 
     The nearest poles, x = eta and eta +- 2 pi i, lie at least d = pi/2 away in t
     however small -eta is; h = 0.2 leaves 1e-21. A large order makes a peak of width
-    1/sqrt(s) in t, which h resolves too.
+    1/sqrt(s) in t, which h resolves too. A small order, whose integrand reaches far
+    to the left, is taken as the derivative of the order above it.
     """
     from scipy.special import rgamma
 
-    derivative = order <= 0.0
+    derivative = order < 1.0
     s = order + 1.0 if derivative else order
     step = min(0.2, 0.6 / math.sqrt(s))
     result = np.empty_like(eta)

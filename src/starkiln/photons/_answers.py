@@ -79,7 +79,8 @@ def spread(
             for sign in (-1.0, 1.0)
         ]
         with np.errstate(invalid="ignore"):
-            shifts = np.nan_to_num(np.stack(ends) - central)
+            shifts = np.stack(ends) - central
+        shifts = np.nan_to_num(shifts, nan=0.0, posinf=math.inf, neginf=-math.inf)
         below = np.hypot(below, np.maximum(-np.min(shifts, axis=0), 0.0))
         above = np.hypot(above, np.maximum(np.max(shifts, axis=0), 0.0))
     touched = (below > 0.0) | (above > 0.0)

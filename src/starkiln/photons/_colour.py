@@ -51,7 +51,7 @@ def srgb(temperature: Any) -> np.ndarray:
     linear = np.maximum(xyz @ _XYZ_TO_SRGB.T, 0.0)
     linear = linear / np.max(linear, axis=-1, keepdims=True)
     curved = 1.055 * linear ** (1.0 / 2.4) - 0.055
-    return np.where(linear <= 0.0031308, 12.92 * linear, curved)
+    return np.minimum(np.where(linear <= 0.0031308, 12.92 * linear, curved), 1.0)
 
 
 def _tristimulus(temperature_k: np.ndarray) -> np.ndarray:

@@ -65,10 +65,12 @@ def photon_sums(
     rows = [echo("temperature", t, "K"), echo("emissivity", emissivity, "")]
     rows += _emitted(t, emissivity)
     rows += _gas(t, volume)
-    if np.all(t > 0.0):
-        x, y = np.moveaxis(chromaticity(t), -1, 0)
-        rows.append(Answer("chromaticity_x", x, "", "CIE 1931 chromaticity", _CIE))
-        rows.append(Answer("chromaticity_y", y, "", "CIE 1931 chromaticity", _CIE))
+    warm = t > 0.0
+    for name, locus in zip(
+        "xy", np.moveaxis(chromaticity(np.where(warm, t, 1.0)), -1, 0), strict=True
+    ):
+        value = np.where(warm, locus, np.nan)
+        rows.append(Answer(f"chromaticity_{name}", value, "", "CIE 1931 chromaticity", _CIE))
     if lower is not None or upper is not None:
         rows += _band(t, lower, upper, emissivity)
     if radius is not None:

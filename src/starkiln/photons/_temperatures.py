@@ -95,14 +95,17 @@ def colour_ratio(
     variable: str = "wavelength",
     form: str = "radiance",
 ) -> np.ndarray:
-    """Return Planck's law at `at_1` over that at `at_2`; arguments as for `planck`."""
+    """Return Planck's law at `at_1` over that at `at_2`; arguments as for `planck`.
+
+    A plain number even where both values underflow; NaN at T = 0, where both vanish.
+    """
     case = resolve(variable, form)
     temperature_k = kelvin(temperature)
-    first, second = (
-        kernels.ln_planck(case.law, coordinate(at, variable), temperature_k) for at in (at_1, at_2)
-    )
-    with np.errstate(over="ignore", invalid="ignore"):
-        return np.exp(first - second)
+    first, second = coordinate(at_1, variable), coordinate(at_2, variable)
+    x_1, x_2 = (kernels.exponent(case.law, q, temperature_k) for q in (first, second))
+    with np.errstate(all="ignore"):
+        power = kernels.integer_power(first / second, case.law.power)
+        return np.asarray(power * np.exp(x_2 - x_1) * np.expm1(-x_2) / np.expm1(-x_1))[()]
 
 
 def colour_temperature(
