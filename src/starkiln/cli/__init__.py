@@ -20,10 +20,12 @@ COMMANDS: dict[str, tuple[str, str]] = {
     "inspect": ("starkiln.cli.inspect", "what a catalogue holds, what is unusable, and why"),
     "fit": ("starkiln.cli.fit", "fit a catalogue: temperatures, diameters, radii, luminosities"),
     "figures": ("starkiln.cli.figures", "draw the figures of a run"),
+    "pressure": ("starkiln.cli.pressure", "radiation against gas pressure inside stars"),
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
+    "photons": ("starkiln.cli.photons", "blackbody radiation and the photon gas at a temperature"),
+    "force": ("starkiln.cli.force", "pressure and force of light: sail, grain, eddington, surface"),
     "bands": ("starkiln.cli.bands", "what is known of passbands, with sources"),
     "convert": ("starkiln.cli.convert", "photometry from one unit or band to another"),
-    "pressure": ("starkiln.cli.pressure", "radiation against gas pressure inside stars"),
 }
 
 _DESCRIPTION = (

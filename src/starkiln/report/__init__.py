@@ -10,6 +10,7 @@ from starkiln.report._comparisons import pressure_plot, temperature_figure
 from starkiln.report._corner import corner_figure
 from starkiln.report._files import CATALOGUE_KINDS, RUN_KINDS, STAR_KINDS, Drawn, write_figures
 from starkiln.report._latex import deluxetable, latex_table
+from starkiln.report._light import light_pressure_plot, spectra_plot
 from starkiln.report._provenance import provenance, provenance_text
 from starkiln.report._references import Reference, bibtex, references
 from starkiln.report._samp import send_table
@@ -35,6 +36,7 @@ __all__ = [
     "hr_plot",
     "image_bytes",
     "latex_table",
+    "light_pressure_plot",
     "machine_readable",
     "misfit_plot",
     "predictive_plot",
@@ -48,6 +50,7 @@ __all__ = [
     "save_figure",
     "sed_figure",
     "send_table",
+    "spectra_plot",
     "style",
     "temperature_figure",
     "view_of",

@@ -1,0 +1,45 @@
+"""`starkiln photons`: blackbody radiation and the photon gas at a temperature."""
+
+from __future__ import annotations
+
+import argparse
+
+from starkiln.cli._answers import UNITS_NOTE, Option, add_options, answer, read_options
+from starkiln.cli._tables import add_format_option
+from starkiln.errors import InputError
+
+_OPTIONS = (
+    Option("temperature", "K", "temperature", error=True),
+    Option("from", "um", "shorter limit of a band"),
+    Option("to", "um", "longer limit of a band"),
+    Option("volume", "m3", "volume of the photon gas; without it, densities only"),
+    Option("emissivity", "", "grey emissivity of the emitting surface", 1.0),
+    Option("radius", "solRad", "radius of a star: adds what arrives at --distance", error=True),
+    Option("distance", "pc", "distance from the centre of that star", error=True),
+)
+
+_NOTES = """\
+Prints one row for each answer with the name of its formula and a reference, the
+inputs first repeated.
+
+"""
+
+
+def configure(parser: argparse.ArgumentParser) -> None:
+    """Add the command's options."""
+    parser.epilog = _NOTES + UNITS_NOTE.format(example="--temperature 5772K --from 400nm")
+    add_options(parser, _OPTIONS)
+    add_format_option(parser)
+
+
+def run(args: argparse.Namespace) -> int:
+    """Print the table."""
+    from starkiln.photons import photon_sums
+
+    inputs, errors = read_options(args, _OPTIONS)
+    if "temperature" not in inputs:
+        raise InputError("--temperature is missing: give the temperature of the radiation, in K")
+    for option, name in (("from", "lower"), ("to", "upper")):
+        if option in inputs:
+            inputs[name] = inputs.pop(option)
+    return answer(photon_sums, inputs, errors, args.format)
