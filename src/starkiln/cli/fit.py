@@ -11,7 +11,7 @@ from starkiln.cli._options import add_catalogue, whole_number
 
 #: Rows up to which the result table is printed; a longer one stands in its file.
 _MOST_PRINTED = 60
-_SHOWN = ("temperature", "angular_diameter", "av", "radius", "luminosity")
+_SHOWN = ("temperature", "angular_diameter", "av", "misfit", "radius", "luminosity")
 
 _NOTES = """\
 CATALOGUE has one row per star. A magnitude or flux density stands in a column that
@@ -174,15 +174,35 @@ def _span(seconds: float) -> str:
     return f"{seconds / 3600.0:.1f} h"
 
 
+def _short(results: Any) -> Any:
+    """Return the results as a table to read: each quantity with its interval in one column."""
+    import numpy as np
+    from astropy.table import Table
+
+    from starkiln.runner import interval_text
+
+    table = Table({"name": results["name"], "status": results["status"]})
+    for quantity in _SHOWN:
+        if quantity not in results.colnames:
+            continue
+        edges = [
+            np.ma.filled(np.ma.asarray(results[quantity + edge]), np.nan)
+            for edge in ("", "_lo", "_hi")
+        ]
+        rows = zip(*edges, strict=True)
+        table[quantity] = [interval_text(*row) if np.all(np.isfinite(row)) else "-" for row in rows]
+        table[quantity].unit = results[quantity].unit
+    table["flags"] = results["flags"]
+    return table
+
+
 def _report(done: Any, quiet: bool) -> int:
     from starkiln.cli._tables import print_table
 
     results = done.results
     statuses = [str(status) for status in results["status"]]
     if len(results) <= _MOST_PRINTED:
-        columns = ["name", "status"]
-        columns += [q + e for q in _SHOWN if q in results.colnames for e in ("", "_lo", "_hi")]
-        print_table(results[[*columns, "flags"]], "text")
+        print_table(_short(results), "text")
         for row in results:
             if str(row["status"]) != "ok":
                 sys.stdout.write(f"{row['name']}: {row['status']}: {row['message']}\n")

@@ -7,7 +7,7 @@ from collections.abc import Callable, Sequence
 from typing import Any
 
 from starkiln.cli._answers import UNITS_NOTE, Option, add_options, answer, read_options
-from starkiln.cli._tables import add_format_option
+from starkiln.cli._tables import add_format
 from starkiln.errors import InputError
 
 _LUMINOSITY = Option("luminosity", "solLum", "luminosity of the star", 1.0, error=True)
@@ -87,7 +87,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
             epilog=UNITS_NOTE.format(example="--distance 0.3au"),
         )
         add_options(kind, options)
-        add_format_option(kind)
+        add_format(kind)
         if name == "sail":
             kind.add_argument(
                 "--escape", action="store_true", help="fly until the sail escapes the star"

@@ -33,6 +33,8 @@ def configure(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Print the table."""
     table = _table(args)
+    if args.table is None and "message" in table.colnames:
+        raise InputError(str(table["message"][0]))
     print_table(table, args.format)
     return 3 if "message" in table.colnames else 0
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 import argparse
 
 from starkiln.cli._answers import UNITS_NOTE, Option, add_options, answer, read_options
-from starkiln.cli._tables import add_format_option
+from starkiln.cli._tables import add_format
 from starkiln.errors import InputError
 
 _OPTIONS = (
@@ -29,7 +29,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
     """Add the command's options."""
     parser.epilog = _NOTES + UNITS_NOTE.format(example="--temperature 5772K --from 400nm")
     add_options(parser, _OPTIONS)
-    add_format_option(parser)
+    add_format(parser)
 
 
 def run(args: argparse.Namespace) -> int:

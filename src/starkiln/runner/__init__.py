@@ -7,7 +7,7 @@ from starkiln.runner._catalogue import (
     fit_catalogue,
 )
 from starkiln.runner._model import StarModel
-from starkiln.runner._result import FitResult, Interval
+from starkiln.runner._result import FitResult, Interval, interval_text
 from starkiln.runner._run import Run, open_run
 from starkiln.runner._single import dust_of, emitter_of, fit
 
@@ -23,5 +23,6 @@ __all__ = [
     "emitter_of",
     "fit",
     "fit_catalogue",
+    "interval_text",
     "open_run",
 ]

@@ -28,10 +28,8 @@ class Interval:
     upper: Any
 
     def __str__(self) -> str:
-        plus, minus = (self.upper - self.median).value, (self.median - self.lower).value
-        digits = _digits(max(plus, minus))
-        unit = f" {self.median.unit}" if str(self.median.unit) else ""
-        return f"{self.median.value:.{digits}f} (+{plus:.{digits}f} -{minus:.{digits}f}){unit}"
+        text = interval_text(self.median.value, self.lower.value, self.upper.value)
+        return f"{text} {self.median.unit}".rstrip()
 
 
 @dataclass(frozen=True)
@@ -159,8 +157,18 @@ class FitResult:
         return "\n".join(lines)
 
 
-def _digits(error: float) -> int:
-    """Return the decimals that show `error` with two figures."""
-    if not np.isfinite(error) or error <= 0.0:
-        return 3
-    return max(0, 1 - int(np.floor(np.log10(error))))
+def interval_text(median: float, low: float, high: float) -> str:
+    """Return `median +upper -lower`, with two figures of the smaller error."""
+    plus, minus = high - median, median - low
+    errors = [error for error in (plus, minus) if error > 0.0]
+    if not errors:
+        return f"{median:.6g}"
+    exponent = 0
+    if not 1e-3 <= abs(median) < 1e6:
+        exponent = int(np.floor(np.log10(abs(median))))
+    scale = 10.0**-exponent
+    decimals = 1 - int(np.floor(np.log10(min(errors) * scale)))
+    shown = [round(v * scale, decimals) for v in (median, plus, minus)]
+    middle, up, down = (f"{v:.{max(decimals, 0)}f}" for v in shown)
+    power = f" e{exponent}" if exponent else ""
+    return f"{middle} +{up} -{down}{power}"
