@@ -23,6 +23,7 @@ _PUBLIC = {
     "Band": "starkiln.passbands",
     "load_band": "starkiln.passbands",
     "luminosity": "starkiln.derived",
+    "pressure_ratio": "starkiln.interiors",
 }
 
 __all__ = [
@@ -36,6 +37,7 @@ __all__ = [
     "fit_catalogue",
     "load_band",
     "luminosity",
+    "pressure_ratio",
     "read_catalogue",
 ]
 

@@ -49,13 +49,8 @@ def luminosity_w(radius_m: np.ndarray, temperature_k: np.ndarray) -> np.ndarray:
 
 def radius_in_m(radius: Any) -> np.ndarray:
     """Return a radius in m; a bare number is in nominal solar radii."""
-    if hasattr(radius, "to_value"):
-        from astropy import units as u
-
-        # astropy's solRad is the nominal one, so the round trip is exact.
-        radius = radius.to_value(u.m) / R_SUN.value if radius.unit != u.solRad else radius.value
-    plain = as_array(radius, "solRad", "radius", lower=0.0, exclusive=True)
-    return plain * R_SUN.value
+    # astropy's solRad is the nominal radius too.
+    return as_array(radius, "solRad", "radius", lower=0.0, exclusive=True) * R_SUN.value
 
 
 def bolometric_magnitude(luminosity_watt: np.ndarray) -> np.ndarray:

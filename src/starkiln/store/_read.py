@@ -26,6 +26,7 @@ def read_table(path: str | Path, format: str) -> Any:
     Returns
     -------
     astropy.table.Table
+        Texts are never masked.
 
     Raises
     ------
@@ -35,8 +36,13 @@ def read_table(path: str | Path, format: str) -> Any:
     from astropy.table import Table
 
     try:
-        return Table.read(path, format=_ASTROPY[format])
+        table = Table.read(path, format=_ASTROPY[format])
     except FileNotFoundError:
         raise StorageError(f"{path} is missing; make the run again") from None
     except (OSError, ValueError, IndexError) as error:
         raise StorageError(f"{path} cannot be read ({error}); make the run again") from error
+    for name in table.colnames:
+        # ECSV and CSV read an empty text back as a masked one.
+        if table[name].dtype.kind in "UO" and hasattr(table[name], "filled"):
+            table[name] = table[name].filled("")
+    return table
