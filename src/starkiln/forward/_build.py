@@ -25,7 +25,7 @@ AV_RANGE = (0.0, 10.0)
 
 #: Terms in ln T, in extinction and in R_V that every band is fitted with. Most need half
 #: of them; SDSS u needs nearly all, for at high extinction its red leak takes over.
-_TERMS = (32, 24, 20)
+_TERMS = (32, 24, 16)
 
 #: Trailing terms that add up to less than this in ln flux are dropped, band by band.
 _DROPPED = 1e-7
