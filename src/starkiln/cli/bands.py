@@ -66,7 +66,8 @@ def _add_extinction(table: Any, bands: tuple[str, ...], args: argparse.Namespace
         for key, default in _DEFAULTS.items()
     )
     dust = Dust(law=args.law or DEFAULT_LAW, rv=rv)
-    ratios, outside = [], []
+    ratios: list[float | None] = []
+    outside = []
     for band in bands:
         try:
             ratios.append(float(extinction_ratio(band, temperature, av, dust=dust)))
