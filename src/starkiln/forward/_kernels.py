@@ -11,7 +11,15 @@ from collections.abc import Iterator
 
 import numpy as np
 
-__all__ = ["chebyshev_fit", "chebyshev_nodes", "contract", "evaluate", "evaluate_slope", "trimmed"]
+__all__ = [
+    "at_point",
+    "chebyshev_fit",
+    "chebyshev_nodes",
+    "contract",
+    "evaluate",
+    "evaluate_slope",
+    "trimmed",
+]
 
 #: Points per product: small enough for the cache and a single star, large enough
 #: that the overhead per point vanishes.
@@ -91,6 +99,11 @@ def contract(series: np.ndarray, r: np.ndarray, n_r: int) -> np.ndarray:
     """Sum series of shape (n, n_r m) over their n_r terms at the points r, shape (n,)."""
     basis = _chebyshev(r, n_r)
     return np.einsum("nj,njb->nb", basis, series.reshape(r.size, n_r, -1))
+
+
+def at_point(coefficients: np.ndarray, r: float) -> np.ndarray:
+    """Sum a series over its last axis at one point, which leaves one of fewer axes."""
+    return coefficients @ _chebyshev(np.array([r]), coefficients.shape[-1])[0]
 
 
 def _series(coefficients: np.ndarray, t: np.ndarray) -> Iterator[tuple[slice, np.ndarray]]:
