@@ -23,7 +23,7 @@ lines at the top of a CSV file,
     # zero_point: 3636               (F_nu of magnitude 0; without it Vega's spectrum
     # zero_point_unit: Jy             through the band is magnitude 0)
 
-and, if wanted, name, system, source, and zero_point_error, offset_error, saturation,
+and, if wanted, system, source, and zero_point_error, offset_error, saturation,
 saturation_error in mag.
 
 With --law, --rv, --temperature or --av the column extinction_ratio is added: the
