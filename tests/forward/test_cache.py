@@ -13,7 +13,7 @@ import pytest
 from starkiln.dust import Dust
 from starkiln.emitters import BlackbodyEmitter
 from starkiln.forward import band_fluxes, cache_folder
-from starkiln.forward._build import band_coefficients
+from starkiln.forward._build import _kept
 from starkiln.forward._cache import cached_array
 
 BANDS = ("Gaia G", "2MASS J")
@@ -22,12 +22,12 @@ BANDS = ("Gaia G", "2MASS J")
 @pytest.fixture
 def folder(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> Path:
     monkeypatch.setenv("STARKILN_CACHE", str(tmp_path))
-    band_coefficients.cache_clear()
+    _kept.cache_clear()
     return tmp_path / "band-fluxes"
 
 
 def coefficients() -> np.ndarray:
-    band_coefficients.cache_clear()
+    _kept.cache_clear()
     return band_fluxes(BlackbodyEmitter(), BANDS, Dust()).coefficients
 
 
@@ -42,10 +42,13 @@ def test_a_table_is_kept_and_read_back(folder: Path) -> None:
 
 def test_key_follows_the_content(folder: Path) -> None:
     coefficients()
-    for dust in (Dust(law="F99"), Dust(rv=4.0)):
+    for dust in (Dust(law="F99"), Dust(law="F99", rv=4.0), Dust(law="F99", rv=5.0)):
         band_fluxes(BlackbodyEmitter(), BANDS, dust)
     band_fluxes(BlackbodyEmitter(), BANDS, Dust(prior="free", width=0.3))
-    assert len(list(folder.iterdir())) == 3 * len(BANDS)
+    band_fluxes(BlackbodyEmitter(), BANDS, Dust(law="G03_SMCBar", rv=2.5))
+    band_fluxes(BlackbodyEmitter(), BANDS, Dust(law="G03_SMCBar", rv=4.5))
+    # G23 and F99 at 3.1, F99 at all R_V, and the average that has none.
+    assert len(list(folder.iterdir())) == 4 * len(BANDS)
 
 
 @pytest.mark.parametrize("damage", ["empty", "cut", "flipped", "other"])

@@ -46,6 +46,7 @@ def test_free_rv(law: str) -> None:
         fixed = band_fluxes(EMITTER, bands, Dust(law=law, rv=rv))
         direct = [band_flux_direct(EMITTER, b, Dust(law=law, rv=rv), x, av) for b in bands]
         np.testing.assert_allclose(value, np.stack(direct, axis=1), rtol=0.0, atol=1e-5)
+        np.testing.assert_allclose(fixed.ln_flux(x, av), value, rtol=0.0, atol=2e-6)
         np.testing.assert_allclose(slope, fixed.ln_flux_and_slope(x, av)[1], rtol=0.0, atol=1e-4)
     alone = table.ln_flux(x[7:8], av[7:8], np.array([high]))
     np.testing.assert_array_equal(alone[0], value[7])
@@ -69,7 +70,7 @@ def test_a_band_of_the_users_own(tmp_path: Path) -> None:
     (tmp_path / "mine.csv").write_text(text + "wavelength,response\n0.5,0\n0.55,1\n0.6,0\n")
     x, av = points(50)
     table = band_fluxes(EMITTER, (str(tmp_path / "mine.csv"), load_band("Gaia G")), Dust())
-    assert table.bands == ("mine", "Gaia G")
+    assert table.bands == (str(tmp_path / "mine.csv"), "Gaia G")
     direct = band_flux_direct(EMITTER, str(tmp_path / "mine.csv"), Dust(), x, av)
     np.testing.assert_allclose(table.ln_flux(x, av)[:, 0], direct, rtol=0.0, atol=1e-6)
 

@@ -163,6 +163,8 @@ def test_unknown_band_offers_the_nearest() -> None:
         load_band("Gaia B")
     with pytest.raises(BandError, match="starkiln bands"):
         load_band("qqqqqq")
+    with pytest.raises(BandError, match="the curve of 'Tycho VT' is not part of starkiln"):
+        load_band("Tycho VT")
 
 
 def test_unknown_magnitude_system() -> None:

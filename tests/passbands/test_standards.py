@@ -16,10 +16,10 @@ REFERENCE = Path(__file__).parents[1] / "reference"
 WILLMER = {row["band"]: row for row in Table.read(REFERENCE / "willmer2018.ecsv")}
 SUN = Table.read(REFERENCE / "solar_spectrum.ecsv")
 
-#: Pivots that differ by more than 0.5 per cent, for Willmer used other curves there:
-#: for Johnson-Cousins those of Maiz Apellaniz 2006 and Bessell 1983 (here Bessell 1990,
-#: weighting energy), for SDSS u one without red leak of another author (here Doi et al.
-#: 2010), for LSST the baseline of 2016 (here 2023), for W3 one of unknown origin.
+#: Pivots that differ by more than 0.5 per cent, for Willmer used other curves there: for
+#: Johnson-Cousins not those of Bessell 1990, which weight energy; for SDSS u none with the
+#: red leak of Doi et al. 2010; for LSST the design of 2016, here the throughputs of 2023;
+#: for W3 none of Wright et al. 2010, whose colour corrections this one reproduces.
 OTHER_CURVE = {
     "Johnson U": 0.008,
     "Johnson B": 0.006,
@@ -49,7 +49,7 @@ def test_sun(name: str) -> None:
 
 @pytest.mark.parametrize("name", WILLMER)
 def test_vega(name: str) -> None:
-    # The scales differ by 3 per cent: there Vega is dimmed to F_lambda(0.5556 um) = 3.34e-9.
+    # Vega is 3 per cent brighter there in every band: another absolute scale.
     band = load_band(name)
     vega = -2.5 * np.log10(band.zero_flux_w_m3("Vega") / band.zero_flux_w_m3("AB"))
     allowed = 0.07 if name == "WISE W3" else 0.05

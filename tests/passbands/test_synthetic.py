@@ -8,6 +8,7 @@ from astropy import units as u
 
 from starkiln.errors import BandError, InputError
 from starkiln.passbands import band_names, load_band, synthetic_flux, synthetic_magnitude
+from starkiln.passbands._kernels import spectrum_mean
 
 
 @pytest.mark.parametrize("name", band_names())
@@ -32,6 +33,15 @@ def test_a_line_narrower_than_the_curve_samples() -> None:
     expected = np.interp(0.62e-6, band.wavelength_m, plain) / (plain @ band.step_m) * 1e-6
     mean = synthetic_flux(wave, flux, band)
     assert mean.to_value("W m-2 um-1") == pytest.approx(expected, rel=1e-4)
+
+
+def test_coarse_curve_and_coarse_spectrum_are_integrated_exactly() -> None:
+    # A triangle 1, 2, 3 weighting photons, F = lambda: the integrals of R lambda^2 and
+    # R lambda are 25/6 and 2.
+    curve = np.array([1.0, 2.0, 3.0]), np.array([0.0, 1.0, 0.0])
+    spectrum = np.array([0.5, 4.0]), np.array([0.5, 4.0])
+    mean = spectrum_mean(curve, spectrum, photon=True)
+    assert mean == pytest.approx(25.0 / 12.0, rel=1e-14)
 
 
 def test_order_of_the_spectrum_does_not_matter() -> None:

@@ -10,9 +10,21 @@ from starkiln.cli._tables import add_format, print_table
 
 _NOTES = """\
 Without NAME all bands are listed, the most important system first. With NAME all that
-is known of that band is printed; NAME may also be a file with a band of your own (an
-ECSV, CSV or VOTable file; see the README). Case, space, dot, dash and underscore in a
-name do not matter.
+is known of that band is printed. Case, space, dot, dash and underscore in a name do not
+matter.
+
+NAME may be a file with a band of your own, here and wherever a band is named: an ECSV,
+CSV or VOTable file with the columns wavelength and response and, as metadata, PARAMs or
+lines at the top of a CSV file,
+
+    # response_kind: photon          (or energy: what the response weights)
+    # magnitude_system: Vega         (or AB, which needs no zero point)
+    # wavelength_unit: nm            (unless the column has a unit)
+    # zero_point: 3636               (F_nu of magnitude 0; without it Vega's spectrum
+    # zero_point_unit: Jy             through the band is magnitude 0)
+
+and, if wanted, system, source, and zero_point_error, offset_error, saturation,
+saturation_error in mag.
 
 With --law, --rv, --temperature or --av the column extinction_ratio is added: the
 extinction in the band over that at 0.55 um, of a blackbody of that temperature behind
@@ -66,7 +78,8 @@ def _add_extinction(table: Any, bands: tuple[str, ...], args: argparse.Namespace
         for key, default in _DEFAULTS.items()
     )
     dust = Dust(law=args.law or DEFAULT_LAW, rv=rv)
-    ratios, outside = [], []
+    ratios: list[float | None] = []
+    outside = []
     for band in bands:
         try:
             ratios.append(float(extinction_ratio(band, temperature, av, dust=dust)))

@@ -1,5 +1,5 @@
 """Extinction laws: the published ones, at the door of the dust_extinction package."""
 
-from starkiln.dust._dust import DEFAULT_LAW, Dust, law_names
+from starkiln.dust._dust import DEFAULT_LAW, DEFAULT_RV, Dust, law_names
 
-__all__ = ["DEFAULT_LAW", "Dust", "law_names"]
+__all__ = ["DEFAULT_LAW", "DEFAULT_RV", "Dust", "law_names"]

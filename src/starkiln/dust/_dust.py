@@ -13,11 +13,14 @@ from starkiln.dust._catalogue import LAWS, law_info
 from starkiln.dust._laws import load_law
 from starkiln.errors import DustError
 
-__all__ = ["DEFAULT_LAW", "Dust", "law_names"]
+__all__ = ["DEFAULT_LAW", "DEFAULT_RV", "Dust", "law_names"]
 
 #: Gordon et al. 2023, ApJ 950, 86: the one average law of the Milky Way that covers
 #: 0.0912 to 32 um, so that every band from GALEX to WISE W4 is inside its range.
 DEFAULT_LAW = "G23"
+
+#: R_V of the diffuse Milky Way (Cardelli, Clayton & Mathis 1989, ApJ 345, 245).
+DEFAULT_RV = 3.1
 
 _PRIORS = ("column", "free", "zero", "gaussian", "uniform")
 
@@ -59,7 +62,7 @@ class Dust:
     """
 
     law: str = DEFAULT_LAW
-    rv: float = 3.1
+    rv: float = DEFAULT_RV
     prior: str = "column"
     width: float = 1.0
     mean: float = 0.0

@@ -10,12 +10,12 @@ from functools import lru_cache
 import numpy as np
 
 from starkiln._version import __version__
-from starkiln.dust import Dust
+from starkiln.dust import DEFAULT_RV, Dust
 from starkiln.emitters import Emitter
 from starkiln.errors import DustError
 from starkiln.forward._cache import cached_array
 from starkiln.forward._direct import extinguished_mean
-from starkiln.forward._kernels import chebyshev_fit, chebyshev_nodes, trimmed
+from starkiln.forward._kernels import at_point, chebyshev_fit, chebyshev_nodes, trimmed
 from starkiln.passbands import Band
 
 __all__ = ["AV_RANGE", "band_coefficients", "ln_temperature_range", "rv_range"]
@@ -25,7 +25,7 @@ AV_RANGE = (0.0, 10.0)
 
 #: Terms in ln T, in extinction and in R_V that every band is fitted with. Most need half
 #: of them; SDSS u needs nearly all, for at high extinction its red leak takes over.
-_TERMS = (32, 24, 20)
+_TERMS = (32, 24, 16)
 
 #: Trailing terms that add up to less than this in ln flux are dropped, band by band.
 _DROPPED = 1e-7
@@ -34,7 +34,6 @@ _DROPPED = 1e-7
 _FORMAT = 1
 
 
-@lru_cache(maxsize=1024)
 def band_coefficients(emitter: Emitter, band: Band, dust: Dust, *, free_rv: bool) -> np.ndarray:
     """Return the Chebyshev coefficients of ln band flux.
 
@@ -45,7 +44,7 @@ def band_coefficients(emitter: Emitter, band: Band, dust: Dust, *, free_rv: bool
     band : Band
         The passband.
     dust : Dust
-        Law and R_V.
+        Law and R_V; its prior does not matter.
     free_rv : bool
         Whether R_V is a third axis.
 
@@ -55,10 +54,16 @@ def band_coefficients(emitter: Emitter, band: Band, dust: Dust, *, free_rv: bool
         In ln T over the emitter's range, av over `AV_RANGE` and R_V over the law's
         range, each scaled to [-1, 1].
     """
-    key = _key(emitter, band, dust, free_rv)
-    coefficients = cached_array(key, lambda: _integrated(emitter, band, dust, free_rv))
-    coefficients.flags.writeable = False
-    return coefficients
+    usual = Dust(law=dust.law, f_a=dust.f_a)
+    if not free_rv and (dust.rv == DEFAULT_RV or dust.rv_range is None):
+        return _kept(emitter, band, usual, False)
+    whole = _kept(emitter, band, usual, True)
+    if free_rv:
+        return whole
+    # Any other R_V is a cut through the table of all: stars with R_V of their own would
+    # otherwise each make one.
+    low, high = rv_range(dust)
+    return at_point(whole, (dust.rv - low) * (2.0 / (high - low)) - 1.0)
 
 
 def ln_temperature_range(emitter: Emitter) -> tuple[float, float]:
@@ -78,6 +83,14 @@ def rv_range(dust: Dust) -> tuple[float, float]:
     if dust.rv_range is None:
         raise DustError(f"the law {dust.law} is a single average: its R_V cannot be free")
     return dust.rv_range
+
+
+@lru_cache(maxsize=1024)
+def _kept(emitter: Emitter, band: Band, dust: Dust, free_rv: bool) -> np.ndarray:
+    key = _key(emitter, band, dust, free_rv)
+    coefficients = cached_array(key, lambda: _integrated(emitter, band, dust, free_rv))
+    coefficients.flags.writeable = False
+    return coefficients
 
 
 def _integrated(emitter: Emitter, band: Band, dust: Dust, free_rv: bool) -> np.ndarray:
@@ -104,7 +117,7 @@ def _key(emitter: Emitter, band: Band, dust: Dust, free_rv: bool) -> str:
     """Digest of all that the coefficients follow from."""
     from importlib.metadata import version
 
-    law = (dust.law, None if free_rv else dust.rv, dust.f_a, version("dust_extinction"))
+    law = (dust.law, free_rv, dust.f_a, version("dust_extinction"))
     settings = (_FORMAT, __version__, _TERMS, _DROPPED, AV_RANGE, repr(emitter), law)
     digest = hashlib.sha256(repr(settings).encode())
     for array in (band.wavelength_m, band.weight):

@@ -11,13 +11,24 @@ from collections.abc import Iterator
 
 import numpy as np
 
-__all__ = ["chebyshev_fit", "chebyshev_nodes", "contract", "evaluate", "evaluate_slope", "trimmed"]
+__all__ = [
+    "at_point",
+    "chebyshev_fit",
+    "chebyshev_nodes",
+    "contract",
+    "evaluate",
+    "evaluate_slope",
+    "trimmed",
+]
 
 #: Points per product: small enough for the cache and a single star, large enough
 #: that the overhead per point vanishes.
 BLOCK = 64
 #: Numbers held at once in the sums over the first axis.
 _WORKSPACE = 250_000
+#: Multiplications in one matrix product: OpenBLAS keeps to one thread below 2^18, and
+#: waiting for a second one costs more than it saves here, the more so on a busy machine.
+_PRODUCT = 2**18
 
 
 def chebyshev_nodes(n: int) -> np.ndarray:
@@ -90,15 +101,23 @@ def contract(series: np.ndarray, r: np.ndarray, n_r: int) -> np.ndarray:
     return np.einsum("nj,njb->nb", basis, series.reshape(r.size, n_r, -1))
 
 
+def at_point(coefficients: np.ndarray, r: float) -> np.ndarray:
+    """Sum a series over its last axis at one point, which leaves one of fewer axes."""
+    return coefficients @ _chebyshev(np.array([r]), coefficients.shape[-1])[0]
+
+
 def _series(coefficients: np.ndarray, t: np.ndarray) -> Iterator[tuple[slice, np.ndarray]]:
     """Sum over the terms in t, some blocks of points at a time."""
     n_t, n_a, m = coefficients.shape
     flat = coefficients.reshape(n_t, n_a * m)
+    width = max(1, _PRODUCT // (BLOCK * n_t))
+    pieces = [np.ascontiguousarray(flat[:, k : k + width]) for k in range(0, n_a * m, width)]
     chunk = BLOCK * max(1, _WORKSPACE // (BLOCK * n_a * m))
     for start in range(0, t.size, chunk):
         part = slice(start, min(start + chunk, t.size))
         basis = _chebyshev(_padded(t[part]), n_t).reshape(-1, BLOCK, n_t)
-        yield part, np.matmul(basis, flat).reshape(-1, n_a, m)
+        sums = [np.matmul(basis, piece) for piece in pieces]
+        yield part, np.concatenate(sums, axis=-1).reshape(-1, n_a, m)
 
 
 def _sum(basis: np.ndarray, series: np.ndarray, part: slice) -> np.ndarray:

@@ -115,7 +115,9 @@ def band_fluxes(
     bands : sequence of str or Band
         Bands, or their names.
     dust : Dust
-        Law and R_V; its prior does not matter here.
+        Law and R_V; its prior does not matter here. An R_V other than 3.1 makes the
+        table of all R_V once (some seconds, kept on disk), and every R_V then costs
+        nothing.
     free_rv : bool
         Whether R_V is an argument of the table, over the law's whole range.
 
@@ -131,8 +133,7 @@ def band_fluxes(
         A band is unknown, the law does not reach it, or it has no free R_V.
     """
     loaded = [load_band(band) if isinstance(band, str) else band for band in bands]
-    plain = Dust(law=dust.law, rv=dust.rv, f_a=dust.f_a)
-    per_band = [band_coefficients(emitter, band, plain, free_rv=free_rv) for band in loaded]
+    per_band = [band_coefficients(emitter, band, dust, free_rv=free_rv) for band in loaded]
     n_axes = 3 if free_rv else 2
     shape = np.max([c.shape for c in per_band], axis=0) if per_band else np.full(n_axes, 2)
     stacked = np.zeros((*shape, len(loaded)))
@@ -143,7 +144,7 @@ def band_fluxes(
         tuple(band.name for band in loaded),
         ln_temperature_range(emitter),
         stacked.reshape(shape[0], shape[1], -1),
-        rv_range(plain) if free_rv else None,
+        rv_range(dust) if free_rv else None,
     )
 
 

@@ -39,12 +39,13 @@ def read_band(path: str | Path) -> Band:
           W m-2 um-1, or in mag as AB minus Vega; without it Vega's spectrum
           through the band is magnitude 0. An AB band needs none;
         - `wavelength_unit`, where the column has no unit;
-        - `name`, `system`, `zero_point_error` (mag, 0.02 unless given),
+        - `system` (the file's name), `zero_point_error` (mag, 0.02 unless given),
           `offset_error` (mag, 0), `saturation`, `saturation_error` (mag), `source`.
 
     Returns
     -------
     Band
+        Its name is the path, so that the name leads back to the file.
 
     Raises
     ------
@@ -56,8 +57,8 @@ def read_band(path: str | Path) -> Band:
     file = _BandFile(Path(path))
     kind: Any = file.choice("response_kind", ("photon", "energy"))
     native = file.choice("magnitude_system", ("Vega", "AB"))
-    name = file.text("name", file.path.stem)
-    bare = Band(name, file.text("system", name), kind, *curve_nodes(*file.samples()))
+    system = file.text("system", file.path.stem)
+    bare = Band(str(path), system, kind, *curve_nodes(*file.samples()))
     if not _PIVOT_RANGE_M[0] <= bare.pivot_m <= _PIVOT_RANGE_M[1]:
         raise file.error(
             f"the pivot wavelength is {bare.pivot_m * 1e6:.4g} um, outside 0.0912 to 32 um: is "

@@ -40,14 +40,14 @@ def load_band(name: str | Path) -> Band:
         be used.
     """
     if is_band_file(str(name)):
-        path = Path(name).resolve()
+        path = Path(name)
         stamp = path.stat() if path.is_file() else None
-        return _load_file(path, (stamp.st_mtime_ns, stamp.st_size) if stamp else None)
+        return _load_file(str(name), (stamp.st_mtime_ns, stamp.st_size) if stamp else None)
     return _load(canonical_name(str(name)))
 
 
 @cache
-def _load_file(path: Path, stamp: tuple[int, int] | None) -> Band:
+def _load_file(path: str, stamp: tuple[int, int] | None) -> Band:
     # The stamp is part of the cache's key, so that an edited file is read again.
     return read_band(path)
 

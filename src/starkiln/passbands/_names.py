@@ -38,6 +38,9 @@ _SURVEY_SYNONYMS = {
     "LSST ": ("Rubin ",),
 }
 
+#: Bands whose curves could not be sourced: how their names begin, without spaces.
+_LEFT_OUT = ("tycho", "hipparcos", "stroemgren", "stromgren", "tess", "kepler", "irac", "spitzer")
+
 #: What the name of a file with a band of the user's own ends in.
 BAND_FILE_SUFFIXES = (".ecsv", ".csv", ".vot", ".votable", ".xml")
 
@@ -79,6 +82,11 @@ def canonical_name(text: str) -> str:
         None does; the nearest names are offered.
     """
     name = match_band(text)
+    if name is None and _key(text).startswith(_LEFT_OUT):
+        raise BandError(
+            f"the curve of '{text}' is not part of starkiln, for want of a source: give a file "
+            "with it as the band's name (see `starkiln bands --help`)"
+        )
     if name is None:
         near = difflib.get_close_matches(_key(text), list(_index()), n=5, cutoff=0.5)
         offers = list(dict.fromkeys(_index()[key] for key in near))[:3]
