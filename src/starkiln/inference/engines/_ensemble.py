@@ -1,7 +1,10 @@
 """The reference engine: emcee's ensemble sampler with a located start and a stopping rule.
 
-Moves: 0.6 differential evolution, 0.4 kernel density (Foreman-Mackey et al. 2013,
-PASP 125, 306). The snooker move is left out on purpose: it is biased in the emcee
+A third of the moves are differential evolution (Foreman-Mackey et al. 2013, PASP 125,
+306, for the ensemble; ter Braak 2006, Stat. Comput. 16, 239, for the move); the others
+are independent proposals about a population. In a few short rounds, which are thrown
+away, that population is drawn anew from the ensemble; then it is fixed and the chain
+that counts begins. The snooker move is left out on purpose: it is biased in the emcee
 releases this was built on.
 """
 
@@ -14,12 +17,15 @@ import numpy as np
 from starkiln.inference._autocorrelation import autocorrelation_time
 from starkiln.inference._problem import Problem
 from starkiln.inference._samples import Samples
-from starkiln.inference.engines._tempered import tempered_start
+from starkiln.inference.engines._proposal import PopulationProposal
+from starkiln.inference.engines._tempered import POPULATION, tempered_start
 
 #: Autocorrelation times that are thrown away before the kept chain.
 BURN_IN_LENGTHS = 5
 #: The chain is looked at after so many steps, and then each time it has grown by a third.
-_FIRST_LOOK, _GROWTH = 200, 1.33
+_FIRST_LOOK, _GROWTH = 150, 1.33
+#: Rounds that shape the proposals, and the steps of each.
+_ROUNDS, _ROUND_STEPS = 4, 60
 
 
 def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
@@ -44,15 +50,14 @@ def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
     import emcee
 
     settings = problem.settings
-    population, _ = tempered_start(problem, rng)
-    start = population[
-        rng.choice(len(population), settings.walkers, replace=settings.walkers > len(population))
-    ]
-    moves = [(emcee.moves.DEMove(), 0.6), (emcee.moves.KDEMove(), 0.4)]
-    sampler = emcee.EnsembleSampler(
-        settings.walkers, start.shape[1], problem.ln_posterior, vectorize=True, moves=moves
-    )
-    state = emcee.State(start, random_state=_random_state(rng))
+    population = tempered_start(problem, rng)
+    state = emcee.State(population[: settings.walkers], random_state=_random_state(rng))
+    for _ in range(_ROUNDS):
+        sampler = _sampler(problem, population)
+        state = sampler.run_mcmc(state, _ROUND_STEPS, skip_initial_state_check=True)
+        recent = sampler.get_chain(discard=_ROUND_STEPS // 2, flat=True)
+        population = recent[rng.choice(len(recent), min(POPULATION, len(recent)), replace=False)]
+    sampler = _sampler(problem, population)
     steps = _FIRST_LOOK
     while True:
         steps = min(steps, settings.max_steps)
@@ -79,6 +84,18 @@ def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:
         chain=chain,
         burn_in=burn,
         autocorrelation=tau,
+    )
+
+
+def _sampler(problem: Problem, population: np.ndarray) -> Any:
+    import emcee
+
+    funnel = problem.names.index("ln_misfit") if "ln_misfit" in problem.names else None
+    proposal = PopulationProposal(population, funnel)
+    dimension = population.shape[1]
+    moves = [(emcee.moves.DEMove(), 0.35), (emcee.moves.MHMove(proposal, ndim=dimension), 0.65)]
+    return emcee.EnsembleSampler(
+        problem.settings.walkers, dimension, problem.ln_posterior, vectorize=True, moves=moves
     )
 
 

@@ -13,13 +13,13 @@ import numpy as np
 
 from starkiln.inference._problem import Problem
 
-POPULATION = 256
+POPULATION = 512
 _MOVES = 4
 _MAX_STAGES = 200
 
 
-def tempered_start(problem: Problem, rng: np.random.Generator) -> tuple[np.ndarray, float]:
-    """Return a population near the posterior and an estimate of ln evidence.
+def tempered_start(problem: Problem, rng: np.random.Generator) -> np.ndarray:
+    """Return a population near the posterior.
 
     Parameters
     ----------
@@ -28,19 +28,16 @@ def tempered_start(problem: Problem, rng: np.random.Generator) -> tuple[np.ndarr
 
     Returns
     -------
-    x : numpy.ndarray
-        Shape (POPULATION, n_parameters).
-    ln_evidence : float
-        Good to a few tenths; the starting population's by-product.
+    numpy.ndarray
+        Shape (max(POPULATION, walkers), n_parameters), in random order.
     """
-    x = problem.draw_prior(rng, POPULATION)
+    x = problem.draw_prior(rng, max(POPULATION, problem.settings.walkers))
     low, high = problem.bounds.T
     ln_prior, ln_like = problem.ln_prior(x), problem.ln_likelihood(x)
-    power, ln_evidence = 0.0, 0.0
+    power = 0.0
     for _ in range(_MAX_STAGES):
         step = _next_step(ln_like, 1.0 - power)
         weight = np.exp(step * (ln_like - ln_like.max()))
-        ln_evidence += step * ln_like.max() + np.log(weight.mean())
         power += step
         chosen = _resample(weight, rng)
         x, ln_prior, ln_like = x[chosen], ln_prior[chosen], ln_like[chosen]
@@ -56,7 +53,7 @@ def tempered_start(problem: Problem, rng: np.random.Generator) -> tuple[np.ndarr
             ln_like = np.where(take, new_like, ln_like)
         if power >= 1.0:
             break
-    return x, float(ln_evidence)
+    return rng.permutation(x)
 
 
 def _next_step(ln_like: np.ndarray, most: float) -> float:
