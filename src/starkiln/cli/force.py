@@ -7,6 +7,7 @@ from collections.abc import Callable, Sequence
 from typing import Any
 
 from starkiln.cli._answers import UNITS_NOTE, Option, add_options, answer, read_options
+from starkiln.cli._run_answers import add_run_options, answer_run, draws_of, refuse_taken
 from starkiln.cli._tables import add_format
 from starkiln.errors import InputError
 
@@ -73,6 +74,12 @@ _KINDS: dict[str, tuple[str, Sequence[Option]]] = {
     "surface": ("a surface in a beam, near a star, or in isotropic radiation", _LIGHT + _PLATE),
 }
 
+_RUN_NOTE = """
+
+With --run, light comes from the posterior draws of each fitted star: luminosity for
+sail, grain and eddington (temperature where --logg is given), temperature and radius
+for surface. Give --mass, since photometry has none."""
+
 
 def configure(parser: argparse.ArgumentParser) -> None:
     """Add one sub-command for each kind."""
@@ -84,9 +91,10 @@ def configure(parser: argparse.ArgumentParser) -> None:
             description=summary,
             allow_abbrev=False,
             formatter_class=argparse.RawDescriptionHelpFormatter,
-            epilog=UNITS_NOTE.format(example="--distance 0.3au"),
+            epilog=UNITS_NOTE.format(example="--distance 0.3au") + _RUN_NOTE,
         )
         add_options(kind, options)
+        add_run_options(kind)
         add_format(kind)
         if name == "sail":
             kind.add_argument(
@@ -96,6 +104,8 @@ def configure(parser: argparse.ArgumentParser) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Print the table of the kind that was asked for."""
+    if args.folder is not None:
+        refuse_taken(args, "irradiance", "luminosity", "temperature", "radius")
     inputs, errors = read_options(args, _KINDS[args.kind][1])
     sums: dict[str, Callable[..., Any]] = {
         "sail": _sail,
@@ -107,7 +117,30 @@ def run(args: argparse.Namespace) -> int:
         if "target" in inputs:
             raise InputError("give --target or --escape, not both")
         inputs["target"] = "escape"
-    return answer(sums[args.kind], inputs, errors, args.format)
+    if args.folder is None:
+        return answer(sums[args.kind], inputs, errors, args.format)
+    taken = _from_run(args, inputs)
+    return answer_run(args, sums[args.kind], inputs, errors, taken)
+
+
+def _from_run(args: argparse.Namespace, inputs: dict[str, Any]) -> Callable[[Any], Any]:
+    """Return what a kind takes from a star's draws; the rest must be given."""
+    if args.kind == "sail" and "target" in inputs:
+        raise InputError("a flight is followed for one star alone: leave out --run, or --target")
+    inputs.pop("luminosity", None)
+    if args.kind == "surface":
+        _require(inputs, "distance")
+        return lambda draws: _columns(draws, "temperature", "radius")
+    if args.kind == "eddington" and args.value_mass is None:
+        _require(inputs, "logg")
+        return lambda draws: _columns(draws, "temperature")
+    if args.value_mass is None:
+        raise InputError("--mass is missing: photometry does not give the mass of the star")
+    return lambda draws: _columns(draws, "luminosity")
+
+
+def _columns(draws: Any, *names: str) -> dict[str, Any] | str:
+    return draws_of(draws, *names) or f"its fit has no {' and '.join(names)}; give its distance"
 
 
 def _eddington(**inputs: Any) -> Any:
