@@ -128,6 +128,17 @@ def test_force_surface(capfd):
     assert rows["normal_pressure"]["value"] == pytest.approx(1361 / 299792458 / 4)
 
 
+def test_force_on_a_planet_with_errors_that_carry_units(capfd):
+    rows, _ = table(
+        capfd,
+        *("force", "surface", "--luminosity", "1", "--distance", "1au", "--e-distance", "1496e6m"),
+        *("--body-radius", "6371km", "--diffuse", "0.3", "--body-mass", "5.972e24"),
+    )
+    force = rows["force"]
+    assert force["value"] == pytest.approx(6.562e8, rel=1e-3)
+    assert force["value_lo"] / force["value"] == pytest.approx(1.01**-2, rel=1e-4)
+
+
 @pytest.mark.parametrize("format", ["csv", "votable", "fits", "text"])
 def test_other_formats(format, capfdbinary):
     assert main(["photons", "--temperature", "300", "--format", format]) == 0
@@ -160,6 +171,10 @@ BAD = [
     (["force", "grain", "--size", "1"], "--density is missing"),
     (["force", "eddington"], "give a mass"),
     (["force", "surface"], "give the light as"),
+    (
+        ["force", "surface", "--irradiance", "1", "--body-radius", "1", "--angle", "3"],
+        "a sphere takes --diffuse",
+    ),
 ]
 
 

@@ -249,6 +249,7 @@ SUMS = [
     lambda: forces.light_sums(luminosity=1.0, distance=1.0, radius=1.0)[0],
     lambda: forces.surface_sums(1361.0, surface=MIRROR, area=2.0, body_mass=3.0),
     lambda: forces.wall_sums(5772.0),
+    lambda: forces.body_sums(1361.0, radius=1e6),
 ]
 
 
@@ -272,6 +273,40 @@ def test_light_of_a_star_by_temperature_or_luminosity():
     assert {"irradiance", "disc_pressure", "energy_density"} <= {r.quantity for r in rows}
     _, isotropic = forces.light_sums(temperature=5772.0)
     assert isotropic is None
+
+
+def test_values_of_sums_agree_with_the_functions():
+    rows = {r.quantity: r.value for r in forces.grain_sums(size=1.0, density=3.0, distance=2.0)}
+    assert rows["light_acceleration"] == pytest.approx(rows["beta"] * rows["gravity"], rel=1e-14)
+    assert rows["gravity"] == pytest.approx(5.93e-3 / 4, rel=1e-4)
+    assert rows["blowout_size"] == pytest.approx(2 * rows["beta"], rel=1e-14)
+    rows = {r.quantity: r.value for r in forces.sail_sums(loading=10.0, distance=0.5)}
+    assert rows["radial_acceleration"] == pytest.approx(
+        4 * rows["characteristic_acceleration"], rel=1e-14
+    )
+    assert rows["pressure_head_on"] == pytest.approx(4 * 9.0807e-6, rel=1e-5)
+    rows = {
+        r.quantity: r.value
+        for r in forces.surface_sums(
+            1361.0, area=2.0, body_mass=3.0, angle=60.0, mass=1.0, distance=1.0
+        )
+    }
+    assert rows["force"] == pytest.approx(rows["momentum_flux"] * 2.0 * 0.5, rel=1e-14)
+    assert rows["acceleration"] == pytest.approx(rows["force"] / 3.0, rel=1e-14)
+    assert rows["force_to_gravity"] == pytest.approx(rows["acceleration"] / 5.93e-3, rel=1e-4)
+
+
+def test_planet():
+    rows = {
+        r.quantity: r.value
+        for r in forces.body_sums(
+            1361.17, radius=6.371e6, albedo=0.3, body_mass=5.972e24, mass=1.0, distance=1.0
+        )
+    }
+    black = 1361.17 / C.value * math.pi * 6.371e6**2
+    assert rows["force"] == pytest.approx(black * (1 + 0.3 * 4 / 9), rel=1e-14)
+    assert rows["equilibrium_temperature"] == pytest.approx(254.6, abs=0.1)
+    assert rows["force_to_gravity"] == pytest.approx(rows["force"] / 3.542e22, rel=1e-3)
 
 
 def test_grain_that_light_overcomes_never_spirals():

@@ -46,6 +46,16 @@ def test_totals():
     assert TOTAL[2] == pytest.approx(float(2 * mp.zeta(3)), rel=1e-15)
 
 
+def test_narrow_band_keeps_its_digits():
+    # The exact integral between the very floats that are handed in, to 1e-12.
+    lower, upper, t = 0.55e-6, 0.55e-6 * (1 + 1e-9), 5772.0
+    with mp.workdps(60):
+        c2 = mp.mpf("6.62607015e-34") * 299792458 / mp.mpf("1.380649e-23")
+        x = [c2 / (mp.mpf(w) * mp.mpf(t)) for w in (upper, lower)]
+        exact = (tail(x[0], 3) - tail(x[1], 3)) * 15 / mp.pi**4
+    assert photons.fraction(lower, upper, t) == pytest.approx(float(exact), rel=1e-12)
+
+
 @pytest.mark.parametrize("counted", [False, True])
 def test_narrow_band_is_the_law_times_its_width(counted):
     form = "photon_exitance" if counted else "exitance"

@@ -136,6 +136,17 @@ def test_kernel_keeps_nan_and_gives_limits():
     np.testing.assert_array_equal(got, [0.0, 0.0, 0.0, math.nan, math.nan])
 
 
+def test_kernel_is_the_radiance_per_wavelength():
+    at, t = np.geomspace(1e-7, 1e-3, 20_001)[:, np.newaxis], np.array([300.0, 5772.0])
+    got = planck_wavelength(at, t)
+    # In blocks and alone, scalar and array.
+    np.testing.assert_array_equal(got, planck(at, t).value)
+    for i in (0, 9_000, 20_000):
+        exact = multiprecision("wavelength", "radiance", at[i, 0], 5772.0)
+        assert got[i, 1] == pytest.approx(float(exact), rel=1e-12)
+        assert planck_wavelength(at[i, 0], 5772.0) == got[i, 1]
+
+
 def test_stefan_boltzmann_comes_out_of_the_spectrum_in_every_variable():
     # Quadrature by scipy of what the door returns, against sigma T^4.
     from scipy.integrate import quad

@@ -64,6 +64,7 @@ _PLATE = (
     Option("angle", "deg", "between the light and the surface's normal", 0.0),
     Option("velocity", "km / s", "of the surface away from the source", 0.0),
     Option("area", "m2", "area of the surface: adds the force"),
+    Option("body-radius", "m", "radius of a sphere in place of a flat surface"),
     Option("body-mass", "kg", "mass of the body: adds its acceleration"),
     Option("mass", "solMass", "mass of the star: adds the force over its gravity"),
 )
@@ -171,7 +172,18 @@ def _surface(**inputs: Any) -> Any:
     rows, flux = light_sums(**light)
     if flux is None:
         return rows + wall_sums(light["temperature"], surface)
+    if "body_radius" in inputs:
+        return rows + _sphere(flux, surface, distance=light.get("distance"), **inputs)
     return rows + surface_sums(flux, surface=surface, distance=light.get("distance"), **inputs)
+
+
+def _sphere(flux: Any, surface: Any, **inputs: Any) -> Any:
+    from starkiln.forces import body_sums
+
+    unlike = surface.specular, surface.transmitted, surface.re_emission
+    if any(unlike) or inputs.pop("angle") or inputs.pop("velocity") or "area" in inputs:
+        raise InputError("a sphere takes --diffuse, its albedo, alone of a surface's options")
+    return body_sums(flux, radius=inputs.pop("body_radius"), albedo=surface.diffuse, **inputs)
 
 
 def _take_surface(inputs: dict[str, Any]) -> Any:

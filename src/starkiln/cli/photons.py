@@ -12,6 +12,7 @@ from starkiln.errors import InputError
 
 _OPTIONS = (
     Option("temperature", "K", "temperature", error=True),
+    Option("at", "um", "wavelength at which Planck's law is given"),
     Option("from", "um", "shorter limit of a band"),
     Option("to", "um", "longer limit of a band"),
     Option("volume", "m3", "volume of the photon gas; without it, densities only"),
