@@ -161,6 +161,8 @@ def test_other_formats(format, capfdbinary):
 BAD = [
     (["photons"], "--temperature is missing"),
     (["photons", "--temperature=-5"], "temperature = -5 K"),
+    (["photons", "--temperature", "inf"], "not finite"),
+    (["photons", "--temperature", "nan"], "not finite"),
     (["photons", "--temperature", "hot"], "--temperature hot"),
     (["photons", "--temperature", "5m"], "--temperature 5m"),
     (["photons", "--temperature", "300", "--from", "2", "--to", "1"], "exchange the two"),
@@ -192,6 +194,18 @@ def test_bad_input_gives_one_clear_line(words, says, capfd):
     assert out == ""
     assert says in err
     assert err.count("\n") == 1
+
+
+@pytest.mark.parametrize("temperature", ["0", "1e-300", "1e100"])
+def test_extreme_temperatures_give_limits_without_a_warning(temperature, capfd):
+    rows, _ = table(
+        capfd, "photons", "--temperature", temperature, "--at", "0.5", "--from", "0.4", "--to", "1"
+    )
+    hot = temperature == "1e100"
+    assert rows["exitance"]["value"] == (float("inf") if hot else 0.0)
+    assert rows["peak_wavelength"]["value"] == approx(0.0, abs=1e-90) if hot else True
+    assert rows["spectral_radiance"]["value"] >= 0.0
+    assert str(rows["free_energy_density"]["value"]) != "-0.0"
 
 
 def test_a_flight_that_fails_exits_with_1(capfd):

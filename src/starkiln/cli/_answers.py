@@ -3,8 +3,11 @@
 from __future__ import annotations
 
 import argparse
+import math
 from collections.abc import Callable, Sequence
 from typing import Any, NamedTuple
+
+import numpy as np
 
 from starkiln.cli._options import quantity
 from starkiln.errors import InputError
@@ -75,7 +78,7 @@ def read_options(
     errors: dict[str, float] = {}
     for option in options:
         text = getattr(args, f"value_{option.key}")
-        value = option.default if text is None else quantity(text, option.unit, option.name)
+        value = option.default if text is None else _number(text, option, option.name)
         if value is not None:
             inputs[option.key] = value
         error = getattr(args, f"error_{option.key}", None)
@@ -83,8 +86,15 @@ def read_options(
             continue
         if value is None:
             raise InputError(f"--e-{option.name} is the error of --{option.name}: give that too")
-        errors[option.key] = quantity(error, option.unit, f"e-{option.name}")
+        errors[option.key] = _number(error, option, f"e-{option.name}")
     return inputs, errors
+
+
+def _number(text: str, option: Option, name: str) -> float:
+    value = quantity(text, option.unit, name)
+    if not math.isfinite(value):
+        raise InputError(f"--{name} {text} is not finite: give a finite number")
+    return value
 
 
 def answer(
@@ -96,10 +106,12 @@ def answer(
     from starkiln.cli._tables import print_table
     from starkiln.photons import spread
 
-    answers, low, high = spread(sums, inputs, errors)
+    # An absurd input may overflow; its answer then is inf, which says enough.
+    with np.errstate(all="ignore"):
+        answers, low, high = spread(sums, inputs, errors)
     columns: dict[str, Any] = {
         "quantity": [row.quantity for row in answers],
-        "value": [float(row.value) for row in answers],
+        "value": [float(row.value) + 0.0 for row in answers],  # no -0
         "unit": [row.unit for row in answers],
     }
     if errors:
