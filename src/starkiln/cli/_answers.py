@@ -28,6 +28,8 @@ class Option(NamedTuple):
         None where the option may stay away.
     error : bool
         Whether `--e-NAME` takes its standard error.
+    letter : str
+        Stands for the value in the help; by default the first of the name.
     """
 
     name: str
@@ -35,6 +37,7 @@ class Option(NamedTuple):
     help: str
     default: float | None = None
     error: bool = False
+    letter: str = ""
 
     @property
     def key(self) -> str:
@@ -43,9 +46,10 @@ class Option(NamedTuple):
 
 
 UNITS_NOTE = """\
-A value may carry its unit, as in {example}; a bare number is in the unit that
-stands with the option. Errors are standard errors, taken as independent: each is
-moved up and down in turn, and value_lo and value_hi enclose 68 per cent.
+A value may carry its unit, as in {example}; a bare number is
+in the unit that stands with the option. Errors are standard errors, taken as
+independent: each is moved up and down in turn, and value_lo and value_hi enclose
+68 per cent.
 A negative value is joined to its option by an equals sign: --NAME=-1deg."""
 
 
@@ -54,7 +58,7 @@ def add_options(parser: argparse.ArgumentParser, options: Sequence[Option]) -> N
     for option in options:
         unit = f", {option.unit}" if option.unit else ""
         default = "" if option.default is None else f" (default: {option.default:g})"
-        metavar = option.name.rsplit("-", maxsplit=1)[-1][0].upper()
+        metavar = option.letter or option.name.rsplit("-", maxsplit=1)[-1][0].upper()
         parser.add_argument(
             f"--{option.name}",
             dest=f"value_{option.key}",

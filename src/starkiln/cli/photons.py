@@ -12,9 +12,9 @@ from starkiln.errors import InputError
 
 _OPTIONS = (
     Option("temperature", "K", "temperature", error=True),
-    Option("at", "um", "wavelength at which Planck's law is given"),
-    Option("from", "um", "shorter limit of a band"),
-    Option("to", "um", "longer limit of a band"),
+    Option("at", "um", "wavelength at which Planck's law is given", letter="L"),
+    Option("from", "um", "shorter limit of a band", letter="L"),
+    Option("to", "um", "longer limit of a band", letter="L"),
     Option("volume", "m3", "volume of the photon gas; without it, densities only"),
     Option("emissivity", "", "grey emissivity of the emitting surface", 1.0),
     Option("radius", "solRad", "radius of a star: adds what arrives at --distance", error=True),
