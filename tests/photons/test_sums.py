@@ -1,10 +1,15 @@
 """The sums of `starkiln photons`, and how errors of inputs spread."""
 
+from functools import partial
+
 import numpy as np
 import pytest
 
 from starkiln.errors import InputError
-from starkiln.photons import INPUT, Answer, photon_sums, spread
+from starkiln.photons import INPUT, Answer, PhotonGas, photon_sums, spread
+
+#: Relative, unlike the default, which takes any two small numbers for equal.
+approx = partial(pytest.approx, rel=1e-6, abs=0.0)
 
 
 def by_name(answers):
@@ -12,7 +17,7 @@ def by_name(answers):
 
 
 def test_every_answer_has_formula_and_reference():
-    rows = photon_sums(5772.0, lower=0.4, upper=0.7, volume=2.0, radius=1.0, distance=10.0)
+    rows = photon_sums(5772.0, at=0.5, lower=0.4, upper=0.7, volume=2.0, radius=1.0, distance=10.0)
     assert len({r.quantity for r in rows}) == len(rows)
     for row in rows:
         assert row.formula
@@ -24,16 +29,48 @@ def test_sun_at_one_au():
     # Nominal irradiance 1361 W m-2 (IAU 2015 B3); R, T and au make 1361.16.
     au_in_pc = np.pi / 648000.0
     rows = by_name(photon_sums(5772.0, radius=1.0, distance=au_in_pc))
-    assert rows["irradiance"].value == pytest.approx(1361.17, abs=0.01)
-    assert rows["exitance"].value == pytest.approx(6.2938e7, rel=1e-4)
-    assert rows["dilution_factor"].value == pytest.approx(5.4068e-6, rel=1e-4)
+    assert rows["irradiance"].value == approx(1361.17, abs=0.01)
+    assert rows["exitance"].value == approx(6.2938e7, rel=1e-4)
+    assert rows["dilution_factor"].value == approx(5.4068e-6, rel=1e-4)
 
 
 def test_furnace():
     # Handbook figures from memory: 1273.15 K emits 148.97 kW m-2 and peaks at 2.276 um.
     rows = by_name(photon_sums(1273.15, emissivity=0.5))
-    assert rows["exitance"].value == pytest.approx(0.5 * 148.98e3, rel=1e-4)
-    assert rows["peak_wavelength"].value == pytest.approx(2.2761, abs=1e-4)
+    assert rows["exitance"].value == approx(0.5 * 148.98e3, rel=1e-4)
+    assert rows["peak_wavelength"].value == approx(2.2761, abs=1e-4)
+
+
+def test_spectral_values_in_the_units_they_state():
+    # By hand at 0.5 um and 5772 K: x = 4.98537.
+    rows = by_name(photon_sums(5772.0, at=0.5))
+    x = 1.438776877e-2 / (0.5e-6 * 5772.0)
+    radiance = 1.191042972e-16 / 0.5e-6**5 / np.expm1(x)
+    assert rows["spectral_radiance"].value == approx(radiance * 1e-6, rel=1e-8)
+    per_hertz = radiance * 0.5e-6**2 / 299792458.0
+    assert rows["spectral_radiance_frequency"].value == approx(per_hertz, rel=1e-8)
+    photon = 6.62607015e-34 * 299792458.0 / 0.5e-6
+    assert rows["spectral_photon_radiance"].value == approx(radiance * 1e-6 / photon, rel=1e-8)
+    assert rows["wien_error"].value == approx(-np.exp(-x), rel=1e-8)
+    assert rows["rayleigh_jeans_error"].value == approx(np.expm1(x) / x - 1, rel=1e-8)
+
+
+def test_values_agree_with_the_functions():
+    rows = by_name(photon_sums(5772.0, lower=0.4, upper=0.7, volume=2.0))
+    gas = PhotonGas(5772.0, 2.0)
+    assert rows["exitance"].value == approx(np.pi * rows["radiance"].value, rel=1e-14)
+    assert rows["energy"].value == gas.energy.value
+    assert rows["entropy"].value == gas.entropy.value
+    assert rows["heat_capacity_density"].value == approx(gas.heat_capacity.value / 2)
+    assert rows["free_energy"].value == gas.free_energy.value
+    assert rows["enthalpy_density"].value == approx(gas.enthalpy.value / 2)
+    assert rows["band_exitance"].value == approx(
+        rows["band_fraction"].value * rows["exitance"].value, rel=1e-14
+    )
+    assert rows["band_photon_exitance"].value == approx(
+        rows["band_photon_fraction"].value * rows["photon_exitance"].value, rel=1e-14
+    )
+    assert rows["mean_photon_energy"].value == approx(1.3435, abs=1e-4)
 
 
 def test_open_band_and_draws():
@@ -58,8 +95,8 @@ def test_spread_of_one_input_is_exact():
     rows, low, high = spread(photon_sums, {"temperature": 5772.0}, {"temperature": 100.0})
     index = [r.quantity for r in rows].index("exitance")
     ends = [photon_sums(t)[index].value for t in (5672.0, 5872.0)]
-    assert low[index] == pytest.approx(ends[0], rel=1e-14)
-    assert high[index] == pytest.approx(ends[1], rel=1e-14)
+    assert low[index] == approx(ends[0], rel=1e-14)
+    assert high[index] == approx(ends[1], rel=1e-14)
     falling = [r.quantity for r in rows].index("peak_wavelength")
     assert low[falling] < rows[falling].value < high[falling]
 
@@ -76,8 +113,8 @@ def test_spread_of_two_inputs_agrees_with_draws():
     )[index].value
     ends = np.percentile(drawn, [15.87, 84.13])
     width = ends[1] - ends[0]
-    assert low[index] == pytest.approx(ends[0], abs=0.02 * width)
-    assert high[index] == pytest.approx(ends[1], abs=0.02 * width)
+    assert low[index] == approx(ends[0], abs=0.02 * width)
+    assert high[index] == approx(ends[1], abs=0.02 * width)
 
 
 def test_spread_leaves_what_it_does_not_touch():
@@ -97,6 +134,8 @@ def test_spread_leaves_what_it_does_not_touch():
 def test_bad_input():
     with pytest.raises(InputError, match="radius and distance together"):
         photon_sums(5772.0, radius=1.0)
+    with pytest.raises(InputError, match="wavelength = 0 m"):
+        photon_sums(5772.0, at=0.0)
     with pytest.raises(InputError, match="exchange the two"):
         photon_sums(5772.0, lower=0.7, upper=0.4)
     with pytest.raises(InputError, match="error of temperature = -1"):

@@ -3,8 +3,11 @@
 from __future__ import annotations
 
 import argparse
+import math
 from collections.abc import Callable, Sequence
 from typing import Any, NamedTuple
+
+import numpy as np
 
 from starkiln.cli._options import quantity
 from starkiln.errors import InputError
@@ -25,6 +28,8 @@ class Option(NamedTuple):
         None where the option may stay away.
     error : bool
         Whether `--e-NAME` takes its standard error.
+    letter : str
+        Stands for the value in the help; by default the first of the name.
     """
 
     name: str
@@ -32,6 +37,7 @@ class Option(NamedTuple):
     help: str
     default: float | None = None
     error: bool = False
+    letter: str = ""
 
     @property
     def key(self) -> str:
@@ -40,9 +46,10 @@ class Option(NamedTuple):
 
 
 UNITS_NOTE = """\
-A value may carry its unit, as in {example}; a bare number is in the unit that
-stands with the option. Errors are standard errors, taken as independent: each is
-moved up and down in turn, and value_lo and value_hi enclose 68 per cent.
+A value may carry its unit, as in {example}; a bare number is
+in the unit that stands with the option. Errors are standard errors, taken as
+independent: each is moved up and down in turn, and value_lo and value_hi enclose
+68 per cent.
 A negative value is joined to its option by an equals sign: --NAME=-1deg."""
 
 
@@ -51,7 +58,7 @@ def add_options(parser: argparse.ArgumentParser, options: Sequence[Option]) -> N
     for option in options:
         unit = f", {option.unit}" if option.unit else ""
         default = "" if option.default is None else f" (default: {option.default:g})"
-        metavar = option.name.rsplit("-", maxsplit=1)[-1][0].upper()
+        metavar = option.letter or option.name.rsplit("-", maxsplit=1)[-1][0].upper()
         parser.add_argument(
             f"--{option.name}",
             dest=f"value_{option.key}",
@@ -75,7 +82,7 @@ def read_options(
     errors: dict[str, float] = {}
     for option in options:
         text = getattr(args, f"value_{option.key}")
-        value = option.default if text is None else quantity(text, option.unit, option.name)
+        value = option.default if text is None else _number(text, option, option.name)
         if value is not None:
             inputs[option.key] = value
         error = getattr(args, f"error_{option.key}", None)
@@ -83,8 +90,15 @@ def read_options(
             continue
         if value is None:
             raise InputError(f"--e-{option.name} is the error of --{option.name}: give that too")
-        errors[option.key] = quantity(error, option.unit, f"e-{option.name}")
+        errors[option.key] = _number(error, option, f"e-{option.name}")
     return inputs, errors
+
+
+def _number(text: str, option: Option, name: str) -> float:
+    value = quantity(text, option.unit, name)
+    if not math.isfinite(value):
+        raise InputError(f"--{name} {text} is not finite: give a finite number")
+    return value
 
 
 def answer(
@@ -96,10 +110,12 @@ def answer(
     from starkiln.cli._tables import print_table
     from starkiln.photons import spread
 
-    answers, low, high = spread(sums, inputs, errors)
+    # An absurd input may overflow; its answer then is inf, which says enough.
+    with np.errstate(all="ignore"):
+        answers, low, high = spread(sums, inputs, errors)
     columns: dict[str, Any] = {
         "quantity": [row.quantity for row in answers],
-        "value": [float(row.value) for row in answers],
+        "value": [float(row.value) + 0.0 for row in answers],  # no -0
         "unit": [row.unit for row in answers],
     }
     if errors:

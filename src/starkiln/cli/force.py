@@ -7,6 +7,7 @@ from collections.abc import Callable, Sequence
 from typing import Any
 
 from starkiln.cli._answers import UNITS_NOTE, Option, add_options, answer, read_options
+from starkiln.cli._run_answers import add_run_options, answer_run, draws_of, refuse_taken
 from starkiln.cli._tables import add_format
 from starkiln.errors import InputError
 
@@ -63,6 +64,7 @@ _PLATE = (
     Option("angle", "deg", "between the light and the surface's normal", 0.0),
     Option("velocity", "km / s", "of the surface away from the source", 0.0),
     Option("area", "m2", "area of the surface: adds the force"),
+    Option("body-radius", "m", "radius of a sphere in place of a flat surface"),
     Option("body-mass", "kg", "mass of the body: adds its acceleration"),
     Option("mass", "solMass", "mass of the star: adds the force over its gravity"),
 )
@@ -72,6 +74,12 @@ _KINDS: dict[str, tuple[str, Sequence[Option]]] = {
     "eddington": ("a star's Eddington luminosity and factor", _EDDINGTON),
     "surface": ("a surface in a beam, near a star, or in isotropic radiation", _LIGHT + _PLATE),
 }
+
+_RUN_NOTE = """
+
+With --run, light comes from the posterior draws of each fitted star: luminosity for
+sail, grain and eddington (temperature where --logg is given), temperature and radius
+for surface. Give --mass, since photometry has none."""
 
 
 def configure(parser: argparse.ArgumentParser) -> None:
@@ -84,9 +92,10 @@ def configure(parser: argparse.ArgumentParser) -> None:
             description=summary,
             allow_abbrev=False,
             formatter_class=argparse.RawDescriptionHelpFormatter,
-            epilog=UNITS_NOTE.format(example="--distance 0.3au"),
+            epilog=UNITS_NOTE.format(example="--distance 0.3au") + _RUN_NOTE,
         )
         add_options(kind, options)
+        add_run_options(kind)
         add_format(kind)
         if name == "sail":
             kind.add_argument(
@@ -96,6 +105,8 @@ def configure(parser: argparse.ArgumentParser) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Print the table of the kind that was asked for."""
+    if args.folder is not None:
+        refuse_taken(args, "irradiance", "luminosity", "temperature", "radius")
     inputs, errors = read_options(args, _KINDS[args.kind][1])
     sums: dict[str, Callable[..., Any]] = {
         "sail": _sail,
@@ -107,7 +118,30 @@ def run(args: argparse.Namespace) -> int:
         if "target" in inputs:
             raise InputError("give --target or --escape, not both")
         inputs["target"] = "escape"
-    return answer(sums[args.kind], inputs, errors, args.format)
+    if args.folder is None:
+        return answer(sums[args.kind], inputs, errors, args.format)
+    taken = _from_run(args, inputs)
+    return answer_run(args, sums[args.kind], inputs, errors, taken)
+
+
+def _from_run(args: argparse.Namespace, inputs: dict[str, Any]) -> Callable[[Any], Any]:
+    """Return what a kind takes from a star's draws; the rest must be given."""
+    if args.kind == "sail" and "target" in inputs:
+        raise InputError("a flight is followed for one star alone: leave out --run, or --target")
+    inputs.pop("luminosity", None)
+    if args.kind == "surface":
+        _require(inputs, "distance")
+        return lambda draws: _columns(draws, "temperature", "radius")
+    if args.kind == "eddington" and args.value_mass is None:
+        _require(inputs, "logg")
+        return lambda draws: _columns(draws, "temperature")
+    if args.value_mass is None:
+        raise InputError("--mass is missing: photometry does not give the mass of the star")
+    return lambda draws: _columns(draws, "luminosity")
+
+
+def _columns(draws: Any, *names: str) -> dict[str, Any] | str:
+    return draws_of(draws, *names) or f"its fit has no {' and '.join(names)}; give its distance"
 
 
 def _eddington(**inputs: Any) -> Any:
@@ -138,7 +172,18 @@ def _surface(**inputs: Any) -> Any:
     rows, flux = light_sums(**light)
     if flux is None:
         return rows + wall_sums(light["temperature"], surface)
+    if "body_radius" in inputs:
+        return rows + _sphere(flux, surface, distance=light.get("distance"), **inputs)
     return rows + surface_sums(flux, surface=surface, distance=light.get("distance"), **inputs)
+
+
+def _sphere(flux: Any, surface: Any, **inputs: Any) -> Any:
+    from starkiln.forces import body_sums
+
+    unlike = surface.specular, surface.transmitted, surface.re_emission
+    if any(unlike) or inputs.pop("angle") or inputs.pop("velocity") or "area" in inputs:
+        raise InputError("a sphere takes --diffuse, its albedo, alone of a surface's options")
+    return body_sums(flux, radius=inputs.pop("body_radius"), albedo=surface.diffuse, **inputs)
 
 
 def _take_surface(inputs: dict[str, Any]) -> Any:

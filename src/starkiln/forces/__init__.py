@@ -55,7 +55,7 @@ from starkiln.forces._surface import (
     isotropic_wall_pressure,
     surface_pressure,
 )
-from starkiln.forces._surface_sums import light_sums, surface_sums, wall_sums
+from starkiln.forces._surface_sums import body_sums, light_sums, surface_sums, wall_sums
 
 __all__ = [
     "ABSORBER",
@@ -66,6 +66,7 @@ __all__ = [
     "StarField",
     "Surface",
     "blowout_size",
+    "body_sums",
     "critical_loading",
     "doppler_factor",
     "drag_time",

@@ -3,17 +3,15 @@
 from __future__ import annotations
 
 import math
+from functools import lru_cache
 from typing import Any
 
 import numpy as np
 
 from starkiln._units import as_array
-from starkiln.constants import M_U, SIGMA_SB, SIGMA_T, C
+from starkiln.constants import SIGMA_SB, C
 from starkiln.forces._inputs import give, gm, metres, watts
-
-#: Atomic masses in u (AME2020, Wang et al. 2021, Chinese Phys. C 45, 030003).
-_HYDROGEN_MASS = 1.00782503
-_HELIUM_MASS = 4.00260325
+from starkiln.matter import composition, thomson_opacity
 
 
 def electron_opacity(hydrogen: Any = 0.7, *, metals: Any = 0.0) -> Any:
@@ -27,15 +25,22 @@ def electron_opacity(hydrogen: Any = 0.7, *, metals: Any = 0.0) -> Any:
     Returns
     -------
     Quantity
-        m2 kg-1: sigma_T / u (X / 1.00783 + 2 Y / 4.00260 + Z / 2), electrons counted
-        by atomic masses; 0.03383 at X = 0.7. The textbook's 0.2 (1 + X) cm2 g-1 is 0.5
-        per cent higher.
+        m2 kg-1, electrons counted by atomic weights as in `starkiln.matter`; 0.03383 at
+        X = 0.7. The textbook's 0.2 (1 + X) cm2 g-1 is 0.5 per cent higher.
     """
     x = as_array(hydrogen, "", "hydrogen mass fraction", lower=0.0, upper=1.0)
     z = as_array(metals, "", "metal mass fraction", lower=0.0, upper=1.0)
     y = as_array(1.0 - x - z, "", "helium mass fraction 1 - X - Z", lower=-1e-12)
-    electrons = x / _HYDROGEN_MASS + 2.0 * y / _HELIUM_MASS + 0.5 * z
-    return give(SIGMA_T.value / M_U.value * electrons, "m2 / kg")
+    of_hydrogen, of_helium, of_metals = _pure_opacities()
+    return give(x * of_hydrogen + y * of_helium + z * of_metals, "m2 / kg")
+
+
+@lru_cache(maxsize=1)
+def _pure_opacities() -> tuple[float, float, float]:
+    """Return the opacities in m2 kg-1 of hydrogen, helium and metals, which add by mass."""
+    pure = ((1.0, 0.0), (0.0, 0.0), (0.0, 1.0))
+    x, y, z = (thomson_opacity(composition(*fractions)) for fractions in pure)
+    return x, y, z
 
 
 def eddington_luminosity(mass: Any, *, opacity: Any = None, hydrogen: Any = 0.7) -> Any:

@@ -212,32 +212,27 @@ def sail_sums(
     ]
     if until is None:
         return rows
-    target = None if until == "escape" else until
-    flight = fly_sail(
-        loading,
-        cone_angle,
-        start=distance,
-        target=target,
-        surface=surface,
-        time_limit=time_limit,
-        **star,
-    )
-    wanted = "escape" if target is None else "target"
-    if flight.reached != wanted:
+    flight = {"loading": loading, "cone_angle": cone_angle, "start": distance, "surface": surface}
+    return rows + _flight_rows(until, time_limit=time_limit, **flight, **star)
+
+
+def _flight_rows(until: Any, **flight: Any) -> list[Answer]:
+    wanted, target = ("escape", None) if until == "escape" else ("target", until)
+    end = fly_sail(target=target, **flight)
+    if end.reached != wanted:
         raise ConvergenceError(
-            f"the sail does not reach its {wanted} (ended by: {flight.reached}, after "
-            f"{flight.time.value:.6g} yr at {flight.distance.value:.6g} au): change the cone "
-            "angle or the loading, or raise the time limit",
-            flight,
+            f"the sail does not reach its {wanted} (ended by: {end.reached}, after "
+            f"{end.time.value:.6g} yr at {end.distance.value:.6g} au): change the cone angle "
+            "or the loading, or raise the time limit",
+            end,
         )
     formula = "equations of motion integrated"
     return [
-        *rows,
         *([] if target is None else [echo("target", target, "au")]),
-        _sail(f"{wanted}_time", flight.time.value, "yr", formula),
-        _sail(f"{wanted}_distance", flight.distance.value, "au", formula),
-        _sail(f"{wanted}_speed", flight.speed.value, "km / s", formula),
-        _sail(f"{wanted}_turns", flight.turns, "", formula),
+        _sail(f"{wanted}_time", end.time.value, "yr", formula),
+        _sail(f"{wanted}_distance", end.distance.value, "au", formula),
+        _sail(f"{wanted}_speed", end.speed.value, "km / s", formula),
+        _sail(f"{wanted}_turns", end.turns, "", formula),
     ]
 
 

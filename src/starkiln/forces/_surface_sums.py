@@ -10,7 +10,7 @@ import numpy as np
 from starkiln._units import as_array
 from starkiln.constants import SIGMA_SB, C
 from starkiln.errors import InputError
-from starkiln.forces._bodies import light_to_gravity
+from starkiln.forces._bodies import force_coefficient, light_to_gravity
 from starkiln.forces._inputs import metres, star_radius, watts
 from starkiln.forces._starfield import star_field
 from starkiln.forces._surface import (
@@ -116,16 +116,67 @@ def surface_sums(
     square_metres = as_array(area, "m2", "area", lower=0.0)
     force = np.hypot(normal.value, tangential.value) * square_metres
     rows += [echo("area", area, "m2"), Answer("force", force, "N", "pressure times area", _MAXWELL)]
+    return rows + _moved(force, body_mass, mass, distance)
+
+
+def _moved(force: Any, body_mass: Any, mass: Any, distance: Any) -> list[Answer]:
     if body_mass is None:
-        return rows
+        return []
     kilograms = as_array(body_mass, "kg", "body mass", lower=0.0, exclusive=True)
-    rows.append(echo("body_mass", body_mass, "kg"))
-    rows.append(Answer("acceleration", force / kilograms, "m / s2", "force over mass", _MAXWELL))
+    rows = [
+        echo("body_mass", body_mass, "kg"),
+        Answer("acceleration", force / kilograms, "m / s2", "force over mass", _MAXWELL),
+    ]
     if mass is not None and distance is not None:
         ratio = light_to_gravity(force, kilograms, distance, mass=mass)
         rows.append(echo("mass", mass, "solMass"))
         rows.append(Answer("force_to_gravity", ratio, "", "force r^2 / G M m", _MAXWELL))
     return rows
+
+
+def body_sums(
+    irradiance: Any,
+    *,
+    radius: Any,
+    albedo: Any = 0.0,
+    body_mass: Any = None,
+    mass: Any = None,
+    distance: Any = None,
+) -> list[Answer]:
+    """Return what a beam of light does to a sphere: a planet, a spacecraft, a pebble.
+
+    Parameters
+    ----------
+    irradiance : float or array_like
+        W m-2.
+    radius : float or array_like
+        Of the sphere, m.
+    albedo : float or array_like
+        Part of the light that it scatters by Lambert's law.
+    body_mass, mass, distance
+        As for `surface_sums`.
+    """
+    metres_across = as_array(radius, "m", "body radius", lower=0.0, exclusive=True)
+    flux = as_array(irradiance, "W / m2", "irradiance", lower=0.0)
+    coefficient = force_coefficient(albedo)
+    section = math.pi * metres_across**2
+    force = flux / C.value * section * coefficient
+    warmth = ((1.0 - np.asarray(albedo)) * flux / (4.0 * SIGMA_SB.value)) ** 0.25
+    return [
+        echo("body_radius", radius, "m"),
+        echo("albedo", albedo, ""),
+        Answer("cross_section", section, "m2", "pi R^2", _MAXWELL),
+        Answer("force_coefficient", coefficient, "", "1 + 4 albedo / 9, Lambert sphere", _MAXWELL),
+        Answer("force", force, "N", "coefficient times F / c times pi R^2", _MAXWELL),
+        Answer(
+            "equilibrium_temperature",
+            warmth,
+            "K",
+            "((1 - albedo) F / 4 sigma)^(1/4)",
+            "Stefan 1879",
+        ),
+        *_moved(force, body_mass, mass, distance),
+    ]
 
 
 def wall_sums(temperature: Any, surface: Surface = ABSORBER) -> list[Answer]:

@@ -16,6 +16,8 @@ from starkiln.constants import C2, C, H
 
 #: Where exp(x) comes near its overflow, the product is taken in logarithms.
 _FAR = 700.0
+#: Elements worked on at a time.
+_BLOCK = 8192
 
 
 class PowerLaw(NamedTuple):
@@ -100,9 +102,28 @@ def planck(law: PowerLaw, coordinate: np.ndarray, temperature_k: np.ndarray) -> 
         0 at T = 0, at zero frequency and at zero and infinite wavelength, which
         are the limits.
     """
+    if max(coordinate.size, temperature_k.size) <= _BLOCK:
+        return _planck(law, coordinate, temperature_k)
+    # Blocks that stay in the processor's cache take half the time of whole arrays.
+    values = np.nditer(
+        [coordinate, temperature_k, None],
+        flags=["external_loop", "buffered"],
+        op_flags=[["readonly"], ["readonly"], ["writeonly", "allocate"]],
+        op_dtypes=[float, float, float],
+        buffersize=_BLOCK,
+    )
+    with values:
+        for q, t, result in values:
+            result[...] = _planck(law, q, t)
+        return np.asarray(values.operands[2])
+
+
+def _planck(law: PowerLaw, coordinate: np.ndarray, temperature_k: np.ndarray) -> np.ndarray:
     x = exponent(law, coordinate, temperature_k)
     with np.errstate(all="ignore"):
-        result = law.first * integer_power(coordinate, law.power) / np.expm1(x)
+        power = integer_power(coordinate, abs(law.power))
+        growth = np.expm1(x)
+        result = law.first / (growth * power) if law.power < 0 else law.first * power / growth
         usual = (x < _FAR) & (result > 0.0) & (result < math.inf)
     if np.all(usual):
         return result
@@ -157,12 +178,12 @@ def limit_errors(x: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
 
 
 def integer_power(base: np.ndarray, power: int) -> np.ndarray:
-    """Return base**power by multiplications, several times faster than `**` in numpy."""
-    square = base * base
+    """Return base**power, a whole number from -5 to 5 but 0, by multiplications."""
     magnitude = abs(power)
-    result = square if magnitude >= 2 else base
-    if magnitude >= 4:
-        result = square * square
+    if magnitude == 1:
+        return base if power > 0 else 1.0 / base
+    square = base * base
+    result = square * square if magnitude >= 4 else square
     if magnitude in (3, 5):
         result = result * base
     return 1.0 / result if power < 0 else result

@@ -6,12 +6,13 @@ from typing import Any
 
 import numpy as np
 
-from starkiln.constants import E_CHARGE, PARSEC, R_SUN
+from starkiln._units import as_array
+from starkiln.constants import E_CHARGE, PARSEC, R_SUN, C
 from starkiln.errors import InputError
 from starkiln.photons._answers import Answer, echo
 from starkiln.photons._colour import chromaticity
 from starkiln.photons._emission import dilution_factor, irradiance_factor
-from starkiln.photons._forms import kelvin
+from starkiln.photons._forms import kelvin, limit_errors, planck
 from starkiln.photons._fractions import band_exitance, exitance, fraction
 from starkiln.photons._gas import PhotonGas
 from starkiln.photons._peaks import peak
@@ -28,6 +29,7 @@ _MICRON = 1e-6
 def photon_sums(
     temperature: Any,
     *,
+    at: Any = None,
     lower: Any = None,
     upper: Any = None,
     volume: Any = None,
@@ -41,6 +43,8 @@ def photon_sums(
     ----------
     temperature : float or array_like
         K, at least 0. Arrays (draws) are taken throughout and broadcast.
+    at : float or array_like, optional
+        Wavelength in um: Planck's law there, per wavelength and per frequency.
     lower, upper : float or array_like, optional
         Band in um; one of them alone leaves the other side open.
     volume : float or array_like, optional
@@ -71,6 +75,8 @@ def photon_sums(
     ):
         value = np.where(warm, locus, np.nan)
         rows.append(Answer(f"chromaticity_{name}", value, "", "CIE 1931 chromaticity", _CIE))
+    if at is not None:
+        rows += _spectrum(t, at, emissivity)
     if lower is not None or upper is not None:
         rows += _band(t, lower, upper, emissivity)
     if radius is not None:
@@ -141,6 +147,39 @@ def _extensive(gas: PhotonGas, suffix: str, per: str) -> list[Answer]:
         Answer(f"heat_capacity{suffix}", gas.heat_capacity.value, f"J K-1{per}", "C_V = 3 S", _GAS),
         Answer(f"free_energy{suffix}", gas.free_energy.value, f"J{per}", "F = -U / 3", _GAS),
         Answer(f"enthalpy{suffix}", gas.enthalpy.value, f"J{per}", "H = 4 U / 3", _GAS),
+    ]
+
+
+def _spectrum(t: np.ndarray, at: Any, emissivity: Any) -> list[Answer]:
+    metres = np.asarray(at) * _MICRON
+    hertz = C.value / as_array(metres, "m", "wavelength", lower=0.0, exclusive=True)
+    wien_error, jeans_error = limit_errors(metres, t)
+    rows = [echo("at", at, "um")]
+    for form, unit in (("", "W / (m2 sr"), ("photon_", "ph / (s m2 sr")):
+        of = {"form": f"{form}radiance", "dilution": emissivity}
+        per_micron = planck(metres, t, **of).value * _MICRON
+        per_hertz = planck(hertz, t, variable="frequency", **of).value
+        name = f"spectral_{form}radiance"
+        rows.append(Answer(name, per_micron, f"{unit} um)", "Planck's law", _PLANCK))
+        rows.append(
+            Answer(
+                f"{name}_frequency",
+                per_hertz,
+                f"{unit} Hz)",
+                "Planck's law per frequency",
+                _PLANCK,
+            )
+        )
+    return [
+        *rows,
+        Answer("wien_error", wien_error, "", "Wien over Planck - 1 = -exp(-x)", _PLANCK),
+        Answer(
+            "rayleigh_jeans_error",
+            jeans_error,
+            "",
+            "Rayleigh-Jeans over Planck - 1 = (exp(x) - 1 - x) / x",
+            _PLANCK,
+        ),
     ]
 
 

@@ -1,8 +1,4 @@
-"""Figures of light itself: blackbody spectra in any form, and pressure against distance.
-
-Functions take `ax=` and return the axes; without it they draw on a figure of their
-own (`ax.figure`), and none needs a display.
-"""
+"""Figures of light itself: blackbody spectra in any form, and pressure against distance."""
 
 from __future__ import annotations
 
@@ -14,7 +10,7 @@ import numpy as np
 from starkiln._units import as_array, as_float
 from starkiln.constants import AU, R_SUN
 from starkiln.errors import InputError
-from starkiln.forces import MIRROR, isotropic_pressure, star_field, surface_pressure
+from starkiln.forces import ABSORBER, MIRROR, isotropic_pressure, star_field, surface_pressure
 from starkiln.photons import (
     FORMS,
     VARIABLES,
@@ -25,6 +21,7 @@ from starkiln.photons import (
     srgb,
     wien,
 )
+from starkiln.report._style import ACCENT, INK, MODEL, PALE, QUIET, drawing
 
 #: Variable -> (label, symbol, unit of the axis).
 _AXES = {
@@ -44,7 +41,6 @@ _FORM_LABELS = {
 }
 #: What the eye sees, in nm (CIE 17-621: limits between 360-400 and 760-830 nm).
 _VISIBLE_NM = (380.0, 760.0)
-_INK, _QUIET, _PALE = "#1a1a1a", "#7d7d7d", "#e4e4e4"
 #: Decades drawn below the highest point.
 _DECADES = 6.0
 
@@ -57,6 +53,7 @@ def spectra_plot(
     unit: Any = None,
     at_unit: Any = None,
     limits: bool = True,
+    width: str | float = "one",
     ax: Any = None,
 ) -> Any:
     """Draw blackbody spectra, with both limits and the visible range.
@@ -72,6 +69,8 @@ def spectra_plot(
         Of the ordinate, and of the abscissa.
     limits : bool
         Draw Wien's law (dashed) and the Rayleigh-Jeans law (dotted).
+    width : {"one", "two"} or float
+        Width of a journal's column, or inches.
     ax : matplotlib.axes.Axes, optional
         Drawn on instead of a new figure.
 
@@ -84,29 +83,23 @@ def spectra_plot(
     InputError
         Unknown variable or form, temperature not above 0, unit that does not fit.
     """
-    from matplotlib.patheffects import withStroke
-
     kelvin = np.sort(np.ravel(_temperatures(temperatures)))[::-1]
     for name, among in ((variable, VARIABLES), (form, FORMS)):
         if name not in among:
             raise InputError(f"{name!r} is unknown: choose one of {', '.join(among)}")
     at = _abscissa(kelvin, variable, at_unit)
     options = {"variable": variable, "form": form, "unit": unit or _ordinate(variable, form, at)}
-    axes = ax or _new_axes()
-    outline = [withStroke(linewidth=3.2, foreground=_INK)]
     curves = [planck(at, t, **options) for t in kelvin]
-    for t, curve, colour in zip(kelvin, curves, srgb(kelvin), strict=True):
-        name = f"{t:,.6g} K"
-        axes.loglog(at.value, curve.value, color=colour, lw=2.0, path_effects=outline, label=name)
-        _name_peak(axes, at, curve, name)
-    if limits:
-        _draw_limits(axes, at, kelvin, options)
-    _frame(axes, at, curves)
-    _mark_visible(axes, at, variable)
     title, symbol, _ = _AXES[variable]
-    axes.set_xlabel(f"{title} [{at.unit:latex_inline}]")
-    axes.set_ylabel(f"{_FORM_LABELS[form] % symbol} [{curves[0].unit:latex_inline}]")
-    axes.legend(frameon=True, facecolor="white", edgecolor=_PALE, framealpha=0.9)
+    with drawing(ax, width=width) as axes:
+        _draw_spectra(axes, at, kelvin, curves)
+        if limits:
+            _draw_limits(axes, at, kelvin, options)
+        _frame(axes, at, curves)
+        _mark_visible(axes, at, variable)
+        axes.set_xlabel(f"{title} [{at.unit:latex_inline}]")
+        axes.set_ylabel(f"{_FORM_LABELS[form] % symbol} [{curves[0].unit:latex_inline}]")
+        axes.legend(frameon=True, facecolor="white", edgecolor=PALE, framealpha=0.9)
     return axes
 
 
@@ -116,6 +109,7 @@ def light_pressure_plot(
     *,
     farthest: Any = 10.0,
     limb_darkening: Sequence[float] = (),
+    width: str | float = "one",
     ax: Any = None,
 ) -> Any:
     """Draw the pressure of a star's light against distance from its centre.
@@ -128,6 +122,8 @@ def light_pressure_plot(
         End of the abscissa, au when bare; beyond the star's surface.
     limb_darkening : sequence of float
         As for `starkiln.forces.star_field`.
+    width : {"one", "two"} or float
+        Width of a journal's column, or inches.
     ax : matplotlib.axes.Axes, optional
         Drawn on instead of a new figure.
 
@@ -144,28 +140,40 @@ def light_pressure_plot(
     end = as_float(farthest, "au", "farthest", lower=star_au, exclusive=True)
     far = np.geomspace(star_au, end, 300)
     field = star_field(luminosity, radius, far, limb_darkening=limb_darkening)
-    black = field.radial_pressure.value
-    point, _ = surface_pressure(field.flux)
-    mirror_point, _ = surface_pressure(field.flux, MIRROR)
-    warmth = effective_temperature(field.flux[0])
-    axes = ax or _new_axes()
-    axes.loglog(far, 2.0 * black, color="#005f9e", lw=1.4, label="mirror")
-    axes.loglog(far, black, color=_INK, lw=1.4, ls="--", label="black plate")
-    for line in (mirror_point, point):
-        axes.loglog(far, line.value, color=_QUIET, lw=0.9, ls=":")
-    axes.plot([], [], color=_QUIET, lw=0.9, ls=":", label="the same, star a point")
-    inside = isotropic_pressure(warmth).value
-    label = f"isotropic, $aT^4/3$ at {warmth.value:,.0f} K"
-    axes.plot([star_au], [inside], "D", color="#c4500a", ms=5, label=label, clip_on=False, zorder=5)
-    axes.set_xlim(star_au, end)
-    axes.set_xlabel("Distance from the star's centre [au]")
-    axes.set_ylabel("Pressure of light, face on [Pa]")
-    upper = axes.secondary_xaxis(
-        "top", functions=(lambda x: x / star_au, lambda x: np.asarray(x) * star_au)
-    )
-    upper.set_xlabel("Distance [stellar radii]")
-    axes.legend(frameon=True, facecolor="white", edgecolor=_PALE)
+    with drawing(ax, width=width) as axes:
+        _draw_pressures(axes, far, field)
+        axes.set_xlim(star_au, end)
+        axes.set_xlabel("Distance from the star's centre [au]")
+        axes.set_ylabel("Pressure of light, face on [Pa]")
+        # The upper axis has ticks of its own.
+        axes.tick_params(which="both", top=False)
+        upper = axes.secondary_xaxis(
+            "top", functions=(lambda x: np.asarray(x) / star_au, lambda x: np.asarray(x) * star_au)
+        )
+        upper.set_xlabel("Distance [stellar radii]")
+        axes.legend(frameon=True, facecolor="white", edgecolor=PALE)
     return axes
+
+
+def _draw_pressures(axes: Any, far: np.ndarray, field: Any) -> None:
+    black = field.radial_pressure.value
+    warmth = effective_temperature(field.flux[0])
+    axes.loglog(far, 2.0 * black, color=MODEL, label="mirror")
+    axes.loglog(far, black, color=INK, ls="--", label="black plate")
+    label: str | None = "the same, star a point"
+    for surface in (MIRROR, ABSORBER):
+        point, _ = surface_pressure(field.flux, surface)
+        axes.loglog(far, point.value, color=QUIET, ls=":", label=label)
+        label = None
+    axes.plot(
+        [far[0]],
+        [isotropic_pressure(warmth).value],
+        "D",
+        color=ACCENT,
+        label=f"isotropic, $aT^4/3$ at {warmth.value:,.0f} K",
+        clip_on=False,
+        zorder=5,
+    )
 
 
 def _temperatures(temperatures: Any) -> np.ndarray:
@@ -189,12 +197,22 @@ def _ordinate(variable: str, form: str, at: Any) -> Any:
     return u.Unit(FORMS[form].unit.format(VARIABLES[variable])) * own / at.unit
 
 
+def _draw_spectra(axes: Any, at: Any, kelvin: np.ndarray, curves: Sequence[Any]) -> None:
+    from matplotlib.patheffects import withStroke
+
+    outline = [withStroke(linewidth=2.4, foreground=INK)]
+    for t, curve, colour in zip(kelvin, curves, srgb(kelvin), strict=True):
+        name = f"{t:,.6g} K"
+        axes.loglog(at.value, curve.value, color=colour, lw=1.5, path_effects=outline, label=name)
+        _name_peak(axes, at, curve, name)
+
+
 def _draw_limits(axes: Any, at: Any, kelvin: np.ndarray, options: dict[str, Any]) -> None:
     for law, style, name in ((wien, "--", "Wien"), (rayleigh_jeans, ":", "Rayleigh-Jeans")):
         for index, t in enumerate(kelvin):
             label = name if index == 0 else None
             values = law(at, t, **options).value
-            axes.loglog(at.value, values, ls=style, color=_QUIET, lw=0.9, label=label)
+            axes.loglog(at.value, values, ls=style, color=QUIET, lw=0.7, label=label)
 
 
 def _name_peak(axes: Any, at: Any, curve: Any, name: str) -> None:
@@ -209,7 +227,7 @@ def _name_peak(axes: Any, at: Any, curve: Any, name: str) -> None:
         textcoords="offset points",
         ha="center",
         fontsize="small",
-        color=_INK,
+        color=INK,
         path_effects=[withStroke(linewidth=2.0, foreground="white")],
     )
 
@@ -225,6 +243,7 @@ def _frame(axes: Any, at: Any, curves: Sequence[Any]) -> None:
 
 def _mark_visible(axes: Any, at: Any, variable: str) -> None:
     from astropy import units as u
+    from matplotlib.patheffects import withStroke
 
     target = u.rad / u.s if variable == "angular_frequency" else at.unit
     ends = (_VISIBLE_NM * u.nm).to("Hz" if target != at.unit else at.unit, u.spectral())
@@ -234,20 +253,15 @@ def _mark_visible(axes: Any, at: Any, variable: str) -> None:
     left, right = axes.get_xlim()
     if high < left or low > right:
         return
-    axes.axvspan(low, high, color=_PALE, zorder=0, lw=0)
+    axes.axvspan(low, high, color=PALE, zorder=0, lw=0)
     axes.text(
         np.sqrt(max(low, left) * min(high, right)),
-        0.98,
+        0.02,
         "visible",
         transform=axes.get_xaxis_transform(),
         ha="center",
-        va="top",
+        va="bottom",
         fontsize="small",
-        color=_INK,
+        color=INK,
+        path_effects=[withStroke(linewidth=2.0, foreground="white")],
     )
-
-
-def _new_axes() -> Any:
-    from matplotlib.figure import Figure
-
-    return Figure(figsize=(5.2, 4.0), layout="constrained").subplots()
