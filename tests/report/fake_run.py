@@ -59,6 +59,7 @@ class FakeModel:
     """Blackbody behind a power law of dust, through infinitely narrow bands."""
 
     bands: tuple[str, ...]
+    dust: object = None
 
     def band_flux(self, draws):
         return self._flux(np.array([pivot_um(band) for band in self.bands]), draws)
