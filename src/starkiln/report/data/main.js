@@ -155,7 +155,7 @@ function drawDiagram() {
   const missing = DATA.names.length - chart.stars.length;
   const parts = ["Grey: not converged."];
   if (chart.key === "luminosity") parts.unshift("Thick line: zero-age main sequence (Tout et al. 1996). Dotted: constant radius.");
-  if (missing) parts.push(`${missing} stars lack a value and stand in the table alone.`);
+  if (missing) parts.push(`Without these values, and so in the table alone: ${missing}.`);
   byId("diagram-note").textContent = parts.join(" ");
   listen(root);
 }
@@ -285,11 +285,12 @@ function posterior(star, kept) {
 
 function photometryTable(star) {
   const head = ["Band", "Wavelength (µm)", "Flux (W m⁻² µm⁻¹)", "Error", "Model", "Residual (%)", "Use"];
+  const known = (x) => (Number.isFinite(x) ? plain(x) : "–");
   const body = make("tbody");
   for (const p of photometryOf(star).sort((a, b) => a.wavelength - b.wavelength)) {
     const use = p.limit ? `${p.limit} limit` : p.used ? "fitted" : "left out";
-    const residual = Number.isFinite(p.model) && p.model ? plain(Number((100 * (p.flux / p.model - 1)).toFixed(1))) : "–";
-    const numbers = [plain(Number(p.wavelength.toPrecision(4))), plain(p.flux), p.error ? plain(p.error) : "–", p.model ? plain(p.model) : "–", residual];
+    const residual = known(Number((100 * (p.flux / p.model - 1)).toFixed(1)));
+    const numbers = [plain(Number(p.wavelength.toPrecision(4))), known(p.flux), known(p.error), known(p.model), residual];
     body.append(make("tr", {}, make("th", { scope: "row" }, p.name), ...numbers.map((n) => make("td", { class: "number" }, n)), make("td", {}, p.note ? `${use}: ${p.note}` : use)));
   }
   const table = make("table", {}, make("caption", {}, "Photometry as understood"), make("thead", {}, make("tr", {}, ...head.map((h) => make("th", { scope: "col" }, h)))), body);

@@ -24,7 +24,7 @@ function spectrumOf(star) {
 
 function photometryOf(star) {
   return (DATA.photometry[star] || []).map(([band, flux, error, model, limit, used, note]) => ({
-    ...DATA.bands[band], flux, error, model, limit: ["", "upper", "lower"][limit], used: Boolean(used),
+    ...DATA.bands[band], flux: flux ?? NaN, error: error ?? NaN, model: model ?? NaN, limit: ["", "upper", "lower"][limit], used: Boolean(used),
     note: note ? DATA.notes[note - 1] : "",
   }));
 }
@@ -79,8 +79,9 @@ function sedPoint(root, p, residual, x, y, v, reach) {
       const s = p.limit === "upper" ? 1 : -1;
       group.append(svg("path", { d: `M${cx} ${cy}v${16 * s}l-4 ${-6 * s}h8l-4 ${6 * s}`, class: bar }));
     } else {
-      const low = Math.max(p.flux - p.error, p.flux * 0.1);
-      group.append(svg("path", { d: `M${cx} ${y(low * p.wavelength)}V${y((p.flux + p.error) * p.wavelength)}`, class: bar }));
+      const error = p.error || 0;
+      const low = Math.max(p.flux - error, p.flux * 0.1);
+      group.append(svg("path", { d: `M${cx} ${y(low * p.wavelength)}V${y((p.flux + error) * p.wavelength)}`, class: bar }));
       group.append(svg("circle", { cx, cy, r: 4, class: kind }));
     }
   }
@@ -90,7 +91,7 @@ function sedPoint(root, p, residual, x, y, v, reach) {
       const s = (p.limit ? p.limit === "lower" : residual > 0) ? -1 : 1;
       group.append(svg("path", { d: `M${cx - 5} ${v(shown) - 4 * s}h10l-5 ${8 * s}Z`, class: kind }));
     } else {
-      const e = (100 * p.error) / p.model;
+      const e = (100 * (p.error || 0)) / p.model;
       group.append(svg("path", { d: `M${cx} ${v(Math.max(shown - e, -reach))}V${v(Math.min(shown + e, reach))}`, class: bar }));
       group.append(svg("circle", { cx, cy: v(shown), r: 4, class: kind }));
     }
