@@ -11,11 +11,11 @@ from typing import Any
 import numpy as np
 
 from starkiln.constants import T_SUN
-from starkiln.interiors import zero_age_luminosity, zero_age_radius
 from starkiln.report._flags import FLAG_MEANINGS
 from starkiln.report._quantities import HTML_UNITS, PRINTED
 from starkiln.report._rounding import round_asymmetric
 from starkiln.report._text import plain_line
+from starkiln.report._tracks import main_sequence_tracks, zero_age_line
 from starkiln.report._view import FitView, numbers, plain_text, run_view
 from starkiln.runner import Run
 
@@ -64,7 +64,8 @@ def payload(run: Run, first: int) -> str:
         "values": {key: columns[key][0] for key in keys},
         "texts": {key: columns[key][1] for key in keys},
         "sunTemperature": T_SUN.value,
-        "zeroAge": _zero_age(),
+        "zeroAge": _points(zero_age_line(150)),
+        "tracks": [[mass, _points(line)] for mass, line in main_sequence_tracks().items()],
         "diagram": "luminosity" if "luminosity" in keys else "bolometric_flux",
     }
     data |= _stars(run)
@@ -97,12 +98,8 @@ def _column(results: Any, key: str) -> tuple[list[float | None], list[list[Any] 
     return [_short(value, 6) for value in medians], texts
 
 
-def _zero_age() -> list[list[float]]:
-    mass = np.geomspace(0.1, 100.0, 150)
-    luminosity, radius = zero_age_luminosity(mass), zero_age_radius(mass)
-    temperature = T_SUN.value * (luminosity / radius**2) ** 0.25
-    pairs = zip(temperature, luminosity, strict=True)
-    return [[float(f"{t:.5g}"), float(f"{lum:.4g}")] for t, lum in pairs]
+def _points(line: tuple[np.ndarray, np.ndarray]) -> list[list[float]]:
+    return [[float(f"{t:.5g}"), float(f"{lum:.4g}")] for t, lum in zip(*line, strict=True)]
 
 
 def _stars(run: Run) -> dict[str, Any]:

@@ -154,7 +154,7 @@ function drawDiagram() {
   byId("diagram-plot").append(root);
   const missing = DATA.names.length - chart.stars.length;
   const parts = ["Grey: not converged."];
-  if (chart.key === "luminosity") parts.unshift("Thick line: zero-age main sequence (Tout et al. 1996). Dotted: constant radius.");
+  if (chart.key === "luminosity") parts.unshift("Thick line: zero-age main sequence (Tout et al. 1996); thin: main-sequence tracks by mass; dotted: constant radius.");
   if (missing) parts.push(`Without these values, and so in the table alone: ${missing}.`);
   byId("diagram-note").textContent = parts.join(" ");
   listen(root);
@@ -169,6 +169,12 @@ function guides(group, x, y, box) {
     if (left) group.append(svg("text", { x: box[0] + 8, y: ends[0][1] + 16, class: "faint" }, `${radius} R☉`));
     else if (ends[1][1] > box[1] + 20 && ends[1][1] < box[3] - 20)
       group.append(svg("text", { x: box[2] - 8, y: ends[1][1] - 8, "text-anchor": "end", class: "faint" }, `${radius} R☉`));
+  }
+  for (const [mass, points] of DATA.tracks) {
+    const track = points.map(([t, l]) => [x(t), y(l)]);
+    const end = track.reduce((a, b) => (b[0] > a[0] ? b : a));
+    group.append(svg("path", { d: line(track), class: "mass" }));
+    group.append(svg("text", { x: end[0] + 5, y: end[1] + 4, class: "faint" }, `${mass} M☉`));
   }
   group.append(svg("path", { d: line(DATA.zeroAge.map(([t, l]) => [x(t), y(l)])), class: "track" }));
 }
