@@ -97,6 +97,23 @@ def test_bad_folders_and_stars(command, folder, tmp_path, capsys):
     assert "is not complete; finish it" in lines[2]
 
 
+@pytest.mark.parametrize("change", [{"identity": {}}, {"priors": None}, {"settings": {"new": 1}}])
+def test_a_run_of_another_version_says_so(change, folder, tmp_path, capsys):
+    meta = json.loads((folder / "run.json").read_text())
+    meta["identity"]["versions"]["starkiln"] = "0.0.1"
+    if "settings" in change:
+        meta["identity"]["settings"] |= change["settings"]
+    elif "priors" in change:
+        del meta["priors"]
+    else:
+        meta |= change
+    (tmp_path / "run.json").write_text(json.dumps(meta))
+    assert main(["report", str(tmp_path)]) == 2
+    line = capsys.readouterr().err
+    assert line.count("\n") == 1
+    assert "fit again into a new folder" in line
+
+
 def test_a_star_that_is_not_there(folder, capsys):
     assert main(["figures", str(folder), "--star", "kiln 3"]) == 2
     assert "no star 'kiln 3'" in capsys.readouterr().err

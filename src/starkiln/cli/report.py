@@ -40,10 +40,9 @@ def configure(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Write, and print the path of every file."""
     from starkiln.observations import read_catalogue
-    from starkiln.report import send_table, write_page, write_tables
-    from starkiln.runner import open_run
+    from starkiln.report import open_for_report, send_table, write_page, write_tables
 
-    folder = open_run(args.folder)
+    folder = open_for_report(args.folder)
     catalogue = read_catalogue(args.catalogue, columns=args.columns) if args.catalogue else None
     sys.stdout.write(f"{write_page(folder)}\n")
     if not (args.tables or args.samp or catalogue):

@@ -11,6 +11,7 @@ from starkiln.report._corner import corner_figure
 from starkiln.report._files import CATALOGUE_KINDS, RUN_KINDS, STAR_KINDS, Drawn, write_figures
 from starkiln.report._latex import deluxetable, latex_table
 from starkiln.report._light import light_pressure_plot, spectra_plot
+from starkiln.report._open import open_for_report
 from starkiln.report._page import page, write_page
 from starkiln.report._provenance import provenance, provenance_text
 from starkiln.report._references import Reference, bibtex, references
@@ -40,6 +41,7 @@ __all__ = [
     "light_pressure_plot",
     "machine_readable",
     "misfit_plot",
+    "open_for_report",
     "page",
     "predictive_plot",
     "pressure_plot",

@@ -13,7 +13,7 @@ from starkiln.report._view import numbers, plain_text
 from starkiln.runner import Run
 from starkiln.store import atomic_write, data_path
 
-_SCRIPTS = ("plots.js", "star.js", "main.js")
+_SCRIPTS = ("plots.js", "star.js", "table.js", "diagram.js", "main.js")
 
 
 def write_page(run: Run, path: str | Path | None = None) -> Path:
