@@ -178,7 +178,9 @@ def _hr_star(ax: Any, results: Any, row: int, draws: Any) -> None:
         [[value - float(results[f"{key}_lo"][row])], [float(results[f"{key}_hi"][row]) - value]]
         for key, value in (("temperature", x), ("luminosity", y))
     ]
-    ax.errorbar(x, y, xerr=bars[0], yerr=bars[1], fmt="none", ecolor=MODEL, elinewidth=0.6, capsize=0)
+    ax.errorbar(
+        x, y, xerr=bars[0], yerr=bars[1], fmt="none", ecolor=MODEL, elinewidth=0.6, capsize=0
+    )
 
 
 def posterior_ellipse(x: Any, y: Any, points: int = 48) -> np.ndarray:
