@@ -59,6 +59,7 @@ class FakeModel:
     """Blackbody behind a power law of dust, through infinitely narrow bands."""
 
     bands: tuple[str, ...]
+    dust: object = None
 
     def band_flux(self, draws):
         return self._flux(np.array([pivot_um(band) for band in self.bands]), draws)
@@ -117,10 +118,14 @@ class FakeRun:
                 if limits and band == "WISE W2":
                     limit, flux = "upper", 1.6 * flux
                 if limits and band == "SDSS g":
-                    used, flux, note = False, 0.75 * flux, "saturated"
+                    # A band that is left out may keep its flux or not.
+                    used, note = False, "saturated"
+                    flux, error = (0.75 * flux, error) if row % 2 else (np.nan, np.nan)
                 lines.append((row, self.names[row - 1], band, flux, error, limit, used, note))
         names = ("row", "name", "band", "flux", "e_flux", "limit", "used", "note")
-        table = Table(rows=lines, names=names)
+        table = Table(rows=lines, names=names, masked=True)
+        for key in ("flux", "e_flux"):
+            table[key].mask = np.isnan(table[key])
         table["flux"].unit = table["e_flux"].unit = "W m-2 um-1"
         return table
 

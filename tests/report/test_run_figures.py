@@ -9,6 +9,7 @@ from tests.report.fake_run import BANDS, FakeRun
 from starkiln.errors import InputError
 from starkiln.report import hr_plot, misfit_plot, pressure_plot, run_view, temperature_figure
 from starkiln.report._sample import band_residuals, posterior_ellipse
+from starkiln.report._tracks import main_sequence_tracks, zero_age_line
 
 
 @pytest.fixture(scope="module")
@@ -30,6 +31,7 @@ def test_hr_shows_stars_radii_and_the_zero_age_sequence(run, width, monkeypatch)
     lines = ("zero-age main sequence", "0.1 R$_\\odot$")
     for label in ("$T$ (K)", r"$L$ ($\mathrm{L_\odot}$)", *lines):
         assert label in texts
+    assert any(text.endswith(" M$_\\odot$") for text in texts)
     # One star has no distance, one was rejected.
     assert "10 stars, 2 without luminosity" in texts
     assert len(ax.patches) == 10
@@ -57,6 +59,18 @@ def test_zero_age_sequence_passes_the_zero_age_sun(run):
     mass = np.geomspace(0.1, 100.0, 200)
     luminosity = np.exp(np.interp(0.0, np.log(mass), np.log(line.get_ydata())))
     assert luminosity == pytest.approx(0.70, rel=0.03)
+
+
+def test_tracks_leave_the_zero_age_line_and_cool(run):
+    """A star brightens and cools on the main sequence; its start lies within 7% of the line."""
+    line = dict(zip(*zero_age_line(), strict=True))
+    temperatures = np.array(sorted(line))
+    for mass, (temperature, luminosity) in main_sequence_tracks().items():
+        start = np.interp(np.log(luminosity[0]), np.log(list(line.values())), np.log(list(line)))
+        assert temperature[0] == pytest.approx(np.exp(start), rel=0.07), mass
+        assert luminosity[-1] > luminosity[0]
+        assert temperature.min() < 0.9 * temperature[0]
+        assert temperatures[0] < temperature[0] < temperatures[-1] * 1.1
 
 
 def test_ellipse_holds_one_standard_deviation():

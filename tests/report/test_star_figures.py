@@ -70,6 +70,21 @@ def test_sed_residuals_are_those_of_the_likelihood(run):
     assert drawn == [pytest.approx(expected)]
 
 
+def test_sed_of_a_band_without_a_flux(run, monkeypatch):
+    """What was left out without a flux keeps its name and the model, and has no point."""
+    figure = sed_figure(run_view(run, 2))
+    assert "SDSS g" in [text for text, _ in drawn_texts(figure, monkeypatch)]
+    place = pivot_um("SDSS g")
+    markers = [
+        line.get_marker()
+        for line in figure.axes[1].lines
+        if len(line.get_xdata()) == 1
+        and line.get_xdata()[0] == place
+        and np.isfinite(line.get_ydata()[0])
+    ]
+    assert markers == ["D"]
+
+
 def test_sed_of_a_negative_flux_and_an_infinite_error(run):
     view = run_view(run, 1)
     first, second, *others = view.photometry

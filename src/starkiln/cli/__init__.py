@@ -20,6 +20,7 @@ COMMANDS: dict[str, tuple[str, str]] = {
     "inspect": ("starkiln.cli.inspect", "what a catalogue holds, what is unusable, and why"),
     "fit": ("starkiln.cli.fit", "fit a catalogue: temperatures, diameters, radii, luminosities"),
     "figures": ("starkiln.cli.figures", "draw the figures of a run"),
+    "report": ("starkiln.cli.report", "write one self-contained page of a run, and its tables"),
     "pressure": ("starkiln.cli.pressure", "radiation against gas pressure inside stars"),
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
     "photons": ("starkiln.cli.photons", "blackbody radiation and the photon gas at a temperature"),

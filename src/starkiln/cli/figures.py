@@ -71,10 +71,9 @@ def configure(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Draw, print the path of every file, and tell on standard error what could not be drawn."""
     from starkiln.observations import read_catalogue
-    from starkiln.report import write_figures
-    from starkiln.runner import open_run
+    from starkiln.report import open_for_report, write_figures
 
-    folder = open_run(args.folder)
+    folder = open_for_report(args.folder)
     rows = sorted({row for name in args.star for row in folder.rows_of(name)})
     kinds = args.only or (_UNASKED[2:] if args.star else _UNASKED)
     catalogue = read_catalogue(args.catalogue, columns=args.columns) if args.catalogue else None

@@ -11,6 +11,8 @@ from starkiln.report._corner import corner_figure
 from starkiln.report._files import CATALOGUE_KINDS, RUN_KINDS, STAR_KINDS, Drawn, write_figures
 from starkiln.report._latex import deluxetable, latex_table
 from starkiln.report._light import light_pressure_plot, spectra_plot
+from starkiln.report._open import open_for_report
+from starkiln.report._page import page, write_page
 from starkiln.report._provenance import provenance, provenance_text
 from starkiln.report._references import Reference, bibtex, references
 from starkiln.report._samp import send_table
@@ -39,6 +41,8 @@ __all__ = [
     "light_pressure_plot",
     "machine_readable",
     "misfit_plot",
+    "open_for_report",
+    "page",
     "predictive_plot",
     "pressure_plot",
     "prior_figure",
@@ -55,5 +59,6 @@ __all__ = [
     "temperature_figure",
     "view_of",
     "write_figures",
+    "write_page",
     "write_tables",
 ]

@@ -55,6 +55,12 @@ _ALL = (
     Printed("radius", r"$R$", r"$\mathrm{R_\odot}$", logarithmic=True),
     Printed("luminosity", r"$L$", r"$\mathrm{L_\odot}$", logarithmic=True),
 )
+#: Units in plain text, where a quantity has one.
+HTML_UNITS = {
+    "temperature": "K", "temperature_2": "K", "angular_diameter": "mas", "av": "mag",
+    "logg": "cgs", "feh": "dex", "distance": "pc", "bolometric_flux": "W m\u207b\u00b2",
+    "radius": "R\u2609", "luminosity": "L\u2609",
+}  # fmt: skip
 PRINTED = {item.key: item for item in _ALL}
 
 #: What follows from the others, so that a corner plot leaves it out unless asked.

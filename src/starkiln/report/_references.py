@@ -57,7 +57,7 @@ class Reference:
             "journal" if self.volume else "note": self.journal,
             "volume": self.volume,
             "pages": self.page,
-            "year": str(self.year or ""),
+            "year": str(self.year or "n.d."),
             "doi": self.doi,
         }
         lines = [f"  {name} = {{{value}}}," for name, value in fields.items() if value]

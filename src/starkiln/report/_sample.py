@@ -9,11 +9,11 @@ import numpy as np
 
 from starkiln.constants import T_SUN
 from starkiln.errors import InputError
-from starkiln.interiors import zero_age_luminosity, zero_age_radius
 from starkiln.report._quantities import printed
-from starkiln.report._style import ACCENT, BAND, INK, MODEL, QUIET, drawing
+from starkiln.report._style import ACCENT, BAND, GREEN, INK, MODEL, QUIET, drawing
 from starkiln.report._text import drawable, plain_line
 from starkiln.report._ticks import round_ticks
+from starkiln.report._tracks import main_sequence_tracks, zero_age_line
 from starkiln.report._view import FitView, numbers, run_view
 
 _RADII = (0.01, 0.03, 0.1, 0.3, 1.0, 3.0, 10.0, 30.0, 100.0, 300.0, 1000.0)
@@ -27,7 +27,8 @@ def hr_plot(run: Any, *, ax: Any = None, width: str | float = "one") -> Any:
     Ellipses hold one standard deviation of each star's posterior of ln T and ln L;
     without kept draws, bars are the 68 per cent intervals. Open points did not
     converge. Dotted lines are of constant radius, the thick line is the zero-age
-    main sequence (Tout et al. 1996, MNRAS 281, 257).
+    main sequence (Tout et al. 1996, MNRAS 281, 257), thin lines are main-sequence
+    tracks of the masses that stand at their ends (`starkiln.interiors.load_grid`).
 
     Parameters
     ----------
@@ -58,7 +59,7 @@ def hr_plot(run: Any, *, ax: Any = None, width: str | float = "one") -> Any:
         limits = _hr_limits(results, rows)
         axes.set(xscale="log", yscale="log", xlim=limits[0][::-1], ylim=limits[1])
         _radius_lines(axes, *limits)
-        _zero_age(axes)
+        _theory(axes)
         for row in rows:
             _hr_star(axes, results, row, run.draws(int(row) + 1))
         round_ticks(axes.xaxis, limits[0])
@@ -177,7 +178,9 @@ def _hr_star(ax: Any, results: Any, row: int, draws: Any) -> None:
         [[value - float(results[f"{key}_lo"][row])], [float(results[f"{key}_hi"][row]) - value]]
         for key, value in (("temperature", x), ("luminosity", y))
     ]
-    ax.errorbar(x, y, xerr=bars[0], yerr=bars[1], fmt="none", ecolor=MODEL, elinewidth=0.6)
+    ax.errorbar(
+        x, y, xerr=bars[0], yerr=bars[1], fmt="none", ecolor=MODEL, elinewidth=0.6, capsize=0
+    )
 
 
 def posterior_ellipse(x: Any, y: Any, points: int = 48) -> np.ndarray:
@@ -209,8 +212,18 @@ def _radius_lines(ax: Any, temperatures: tuple[float, float], lums: tuple[float,
             )  # fmt: skip
 
 
-def _zero_age(ax: Any) -> None:
-    mass = np.geomspace(0.1, 100.0, 200)
-    luminosity, radius = zero_age_luminosity(mass), zero_age_radius(mass)
-    temperature = T_SUN.value * (luminosity / radius**2) ** 0.25
+def _theory(ax: Any) -> None:
+    temperature, luminosity = zero_age_line()
     ax.plot(temperature, luminosity, color=ACCENT, lw=1.6, zorder=2, label="zero-age main sequence")
+    cool, hot = sorted(ax.get_xlim())
+    faint, bright = ax.get_ylim()
+    for mass, (track_t, track_l) in main_sequence_tracks().items():
+        ax.plot(track_t, track_l, color=GREEN, lw=0.7, zorder=2)
+        # Named beyond the cool end of the track, clear of the zero-age line.
+        end = int(np.argmin(track_t))
+        inside = cool * 1.15 < track_t[end] < hot and faint * 1.3 < track_l[end] < bright / 1.5
+        if inside:
+            ax.annotate(
+                rf"{mass:g} M$_\odot$", (track_t[end], track_l[end]), (3, 0),
+                textcoords="offset points", color=GREEN, fontsize=5.5, va="center", zorder=2,
+            )  # fmt: skip

@@ -9,6 +9,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
+from functools import lru_cache
 from typing import Any
 
 import numpy as np
@@ -176,7 +177,22 @@ def run_view(run: Run, row: int) -> FitView:
 def _model_functions(model: StarModel, photometry: tuple[Measurement, ...]) -> Any:
     """Return band fluxes of all measurements, also of those left out, and the spectrum."""
     every = replace(model, bands=tuple(item.band for item in photometry))
-    return every.band_flux, every.spectrum
+    return every.band_flux, replace(every, dust=_RememberedDust(model.dust)).spectrum
+
+
+@dataclass(frozen=True)
+class _RememberedDust:
+    """Dust whose curve is worked out once per grid: most stars of a run share both."""
+
+    dust: Any
+
+    def curve(self, wavelength_m: np.ndarray) -> np.ndarray:
+        return _curve(self.dust, np.asarray(wavelength_m, dtype=float).tobytes())
+
+
+@lru_cache(maxsize=64)
+def _curve(dust: Any, wavelengths: bytes) -> np.ndarray:
+    return dust.curve(np.frombuffer(wavelengths))
 
 
 def _slice_of(run: Run, row: int) -> slice:
@@ -186,20 +202,25 @@ def _slice_of(run: Run, row: int) -> slice:
 
 
 def _measurements(photometry: Any) -> tuple[Measurement, ...]:
-    return tuple(_measurement(line, load_band(str(line["band"]))) for line in photometry)
-
-
-def _measurement(line: Any, band: Any) -> Measurement:
-    return Measurement(
-        band=band.name,
-        wavelength_um=band.pivot_m * 1e6,
-        width_um=band.width_m * 1e6,
-        flux=_number(line["flux"]),
-        e_flux=_number(line["e_flux"]),
-        limit=plain_text(line["limit"]),
-        used=bool(line["used"]),
-        note=plain_text(line["note"]),
-    )
+    # Lists, since a table's cells are slow one by one; a masked cell is None there.
+    names = ("band", "flux", "e_flux", "limit", "used", "note")
+    columns = [photometry[name].tolist() for name in names]
+    found = []
+    for band_name, flux, e_flux, limit, used, note in zip(*columns, strict=True):
+        band = load_band(band_name)
+        found.append(
+            Measurement(
+                band=band.name,
+                wavelength_um=band.pivot_m * 1e6,
+                width_um=band.width_m * 1e6,
+                flux=math.nan if flux is None else flux,
+                e_flux=math.nan if e_flux is None else e_flux,
+                limit=limit or "",
+                used=bool(used),
+                note=note or "",
+            )
+        )
+    return tuple(found)
 
 
 def plain_value(cell: Any) -> Any:
@@ -220,10 +241,6 @@ def plain_text(cell: Any) -> str:
 def numbers(column: Any) -> np.ndarray:
     """Return a column or an array as floats, NaN where it is masked."""
     return np.ma.filled(np.ma.asarray(getattr(column, "value", column), dtype=float), np.nan)
-
-
-def _number(cell: Any) -> float:
-    return math.nan if np.ma.is_masked(cell) else float(cell)
 
 
 def _columns(draws: Any) -> dict[str, np.ndarray]:
