@@ -25,7 +25,7 @@ BURN_IN_LENGTHS = 5
 #: The chain is looked at after so many steps, and then each time it has grown by a third.
 _FIRST_LOOK, _GROWTH = 150, 1.33
 #: Rounds that shape the proposals, and the steps of each.
-_ROUNDS, _ROUND_STEPS = 4, 60
+_ROUNDS, _ROUND_STEPS = 3, 60
 
 
 def run_ensemble(problem: Problem, rng: np.random.Generator) -> Samples:

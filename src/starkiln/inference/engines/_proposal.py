@@ -14,8 +14,11 @@ from __future__ import annotations
 
 import numpy as np
 
-#: Degrees of freedom of the kernels, and number of groups.
-_NU, _GROUPS = 4.0, 4
+#: Groups of like misfit.
+_GROUPS = 4
+#: Degrees of freedom and dimension of the Student kernels add up to this, so that their
+#: density is the inverse fourth power of 1 + d^2/nu.
+_NU_AND_DIMENSION = 8
 #: Share of the proposals that have kernels as wide as the whole population.
 _DEFENCE = 0.15
 
@@ -43,13 +46,16 @@ class PopulationProposal:
         self._roots = [*roots, _root(population, 1)]
         self._shares = np.cumsum([*weights, _DEFENCE])
         self._inverses = [np.linalg.inv(root) for root in self._roots]
+        self._white = [
+            points @ inverse.T for points, inverse in zip(self._points, self._inverses, strict=True)
+        ]
         self._heights = [
             weight / len(points) / float(np.prod(np.diag(root)))
             for weight, points, root in zip(
                 [*weights, _DEFENCE], self._points, self._roots, strict=True
             )
         ]
-        self._power = -0.5 * (_NU + population.shape[1])
+        self._nu = max(_NU_AND_DIMENSION - population.shape[1], 1)
 
     def __call__(
         self, coords: np.ndarray, random: np.random.RandomState
@@ -62,7 +68,7 @@ class PopulationProposal:
         group = np.searchsorted(self._shares, random.uniform(size=n) * self._shares[-1])
         place = random.uniform(size=n)
         step = random.standard_normal((n, dimension))
-        step *= np.sqrt(_NU / random.chisquare(_NU, size=(n, 1)))
+        step *= np.sqrt(self._nu / random.chisquare(self._nu, size=(n, 1)))
         new = np.empty_like(coords)
         for i, (points, root) in enumerate(zip(self._points, self._roots, strict=True)):
             here = group == i
@@ -73,12 +79,15 @@ class PopulationProposal:
     def ln_density(self, x: np.ndarray) -> np.ndarray:
         """Return ln of the density at `x` but for a constant, shape (n,)."""
         total = np.zeros(len(x))
-        for points, inverse, height in zip(
-            self._points, self._inverses, self._heights, strict=True
-        ):
-            white, centres = x @ inverse.T, points @ inverse.T
-            square = np.sum((white[:, None, :] - centres[None, :, :]) ** 2, axis=2)
-            total += height * np.sum((1.0 + square / _NU) ** self._power, axis=1)
+        for white, inverse, height in zip(self._white, self._inverses, self._heights, strict=True):
+            own = x @ inverse.T
+            square = own @ (-2.0 * white.T)
+            square += np.sum(own * own, axis=1)[:, None]
+            square += np.sum(white * white, axis=1)
+            square *= 1.0 / self._nu
+            square += 1.0
+            square *= square
+            total += height * np.sum(1.0 / (square * square), axis=1)
         return np.log(total)
 
 

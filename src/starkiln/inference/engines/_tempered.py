@@ -13,7 +13,7 @@ import numpy as np
 
 from starkiln.inference._problem import Problem
 
-POPULATION = 512
+POPULATION = 256
 _MOVES = 4
 _MAX_STAGES = 200
 
