@@ -171,10 +171,6 @@ def test_where_the_sheet_stands_does_not_enter_its_checksum(tmp_path):
             '[columns]\nVmag = "Johnson V"\ng = { means = "Johnson V" }',
             "the columns 'Vmag' and 'g' both mean Johnson V",
         ),
-        (
-            '[columns]\nVmag = { means = "Pan-STARRS y", system = "Vega", error = 0.1 }',
-            "column 'Vmag': no Vega zero point of Pan-STARRS y is known",
-        ),
     ],
 )
 def test_a_sheet_that_is_wrong_is_refused(read, sheet, words):

@@ -196,7 +196,7 @@ def _missing(source: Source, layout: Layout, sheet: Sheet, draft: _Draft) -> lis
 def _is_code(number: float, magnitude: bool) -> bool:
     if magnitude and math.isfinite(number):
         return not BRIGHTEST <= number <= FAINTEST
-    return any(math.isclose(number, code, rel_tol=1e-6) for code in _CODES)
+    return any(math.isclose(number, code) for code in _CODES)
 
 
 def _quoted(text: str) -> str:
