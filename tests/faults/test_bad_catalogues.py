@@ -28,6 +28,8 @@ GOOD = "good,10,0.01,2,0.1,30,1,\n"
         ("bad,10,0.01,-999,0.1,30,1,", "parallax", "-999 mas", "missing = [-999]"),
         ("bad,10,0.01,2,0.1,30,1,U", "l_2MASS J", "'U'", "leave it empty"),
         ("bad,10,0.01,2,0.1,-30,1,<", "2MASS J", "-30 mJy", "above zero"),
+        ("bad,10,0.01,2,0.1,<30,1,>", "2MASS J", "'<' stands before the number and '>'", ""),
+        ("bad,10_1,0.01,2,0.1,30,1,", "Gaia G", "'10_1' is not a number", "missing"),
         ("bad,,,2,0.1,,,", "no band can be used", "all are empty", ""),
         ("bad,10,,2,0.1,,,", "no band can be used", "Gaia G: no error is given", ""),
         ("bad,>10,,2,0.1,,,", "no band can be used", "only limits", ""),
@@ -67,6 +69,7 @@ def test_both_parallax_and_distance(tmp_path):
     [
         (HEAD + GOOD + "a,10\n", ["line 3", "found 2 cells", "has 8", "leave an empty cell"]),
         (HEAD + GOOD[:-1] + "7,8\n", ["line 2", "found 9 cells", "has 8"]),
+        ("# c\n\n" + HEAD + "# c\n" + GOOD + "\na,10\n", ["line 7", "found 2 cells"]),
         ("", ["the file is empty"]),
         (" \n\n", ["the file is empty"]),
         ("# only a comment\n", ["only comments"]),
@@ -107,9 +110,9 @@ def test_both_parallax_and_distance(tmp_path):
         ),
         (
             "name,Vmag,e_Vmag\na,10,0.1\n",
-            ["no usable band among the headings (Vmag, e_Vmag)", "starkiln inspect", "proposes"],
+            ["no usable band", "('Vmag' may be Johnson V)", "starkiln inspect", "proposes"],
         ),
-        ("name,Gaia G\na,10\n", ["no usable band"]),
+        ("name,Gaia G\na,10\n", ["no usable band among the headings (Gaia G)"]),
         ("name,Gaia G,e_Gaia G,gaia_g\na,1,2,3\n", ["'Gaia G' and 'gaia_g' both mean Gaia G"]),
     ],
 )

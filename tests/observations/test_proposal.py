@@ -42,6 +42,16 @@ def test_a_proposal_makes_the_catalogue_readable(tmp_path, content, bands):
     assert again.proposal() == ""
 
 
+def test_the_magnitude_system_that_a_heading_names(tmp_path):
+    path = tmp_path / "a.csv"
+    path.write_text(OBSERVER)
+    sheet = tmp_path / "sheet.toml"
+    sheet.write_text(survey_catalogue(path).proposal())
+    columns = {c.heading: c for c in read_catalogue(path, columns=sheet).columns}
+    assert columns["J_AB"].system == "AB"
+    assert columns["V"].system == "Vega"
+
+
 def test_a_doubtful_line_stands_as_a_comment(tmp_path):
     path = tmp_path / "a.csv"
     path.write_text("name,Gaia G,e_Gaia G,ebv,W3flux\na,10,0.01,0.1,3\n")

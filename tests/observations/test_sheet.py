@@ -146,6 +146,7 @@ def test_where_the_sheet_stands_does_not_enter_its_checksum(tmp_path):
         ('[columns]\nVmag = { unit = "foo" }', "unit 'foo' is not known"),
         ('[columns]\nVmag = { system = "ABC" }', "system = 'ABC' is none of Vega, AB, ST"),
         ("[columns]\nVmag = { error = -1 }", "error = -1 must be a number above zero"),
+        ("[columns]\nfloor = 0.1", "the sheet's own keys stand above [columns]"),
         ("floor = -0.1", "floor = -0.1 must be a number above zero"),
         ('limit_sigma = "three"', "limit_sigma = 'three' must be a number above zero"),
         ('saturated = "maybe"', "saturated = 'maybe' is none of widen, drop, keep"),

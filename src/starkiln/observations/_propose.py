@@ -6,7 +6,7 @@ import math
 from dataclasses import dataclass, field
 
 from starkiln.errors import InputError
-from starkiln.observations._cells import numbers_of
+from starkiln.observations._cells import numbers_of, texts_of
 from starkiln.observations._files import Source
 from starkiln.observations._headings import heading_key, split_unit
 from starkiln.observations._measure import BRIGHTEST, FAINTEST
@@ -79,9 +79,9 @@ def _propose_name(draft: _Draft, source: Source, layout: Layout) -> None:
     if layout.name:
         return
     for heading, column in layout.columns.items():
-        if column.used or source.table[heading].dtype.kind not in "UOiu":
+        if column.used or source.table[heading].dtype.kind not in "USOiu":
             continue
-        cells = [str(cell).strip() for cell in source.cells(heading, 0, _ROWS)]
+        cells = texts_of(source, heading, 0, _ROWS)
         decimal = any("." in cell and cell.replace(".", "").isdigit() for cell in cells)
         if len(set(cells)) == len(cells) and not decimal:
             draft.lines.append(f'{_quoted(heading)} = "name"  # every row of it differs')

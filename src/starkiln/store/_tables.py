@@ -101,15 +101,11 @@ def _votable(table: Any) -> bytes:
 
 
 def _ascii_column(column: Any) -> Any:
-    from astropy.table import MaskedColumn
+    from astropy.table import Column
 
     filled = column.filled("") if hasattr(column, "filled") else column
-    return MaskedColumn(
-        [_ascii(str(text)) for text in filled],
-        mask=getattr(column, "mask", None),
-        description=column.description,
-        dtype=str,
-    )
+    texts = [_ascii(str(text)) for text in filled]
+    return Column(texts, description=column.description, dtype=str)
 
 
 def _fits_unit(unit: Any) -> bool:
