@@ -26,10 +26,13 @@ QUIET = settings(
 
 
 def look_at(path):
+    catalogue, message = None, ""
     try:
         catalogue = survey_catalogue(path)
     except CatalogueError as error:
-        assert "\n" not in str(error)
+        message = str(error)
+    assert "\n" not in message
+    if catalogue is None:
         return
     catalogue.proposal()
     catalogue.filled()
