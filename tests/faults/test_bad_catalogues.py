@@ -75,6 +75,7 @@ def test_both_parallax_and_distance(tmp_path):
         ("# only a comment\n", ["only comments"]),
         (HEAD, ["headings but no rows"]),
         ("a,10,0.01\nb,11,0.01\n", ["line 1", "numbers, not headings", "2MASS J, e_2MASS J"]),
+        ("name,Gaia G\na," + "9" * 140_000 + "\n", ["line 2 cannot be read", "field larger"]),
         ("Dear all,\nno table\nhere, I fear\n", ["line 3"]),
         ("This is prose\nand no table at all\n", ["does not look like a table", "line 2"]),
         ("<!DOCTYPE html>\n<html></html>", ["a web page, not a table"]),

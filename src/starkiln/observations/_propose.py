@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 import math
 from dataclasses import dataclass, field
 
@@ -49,7 +50,9 @@ def propose_sheet(source: Source, layout: Layout, sheet: Sheet) -> str:
         if not column.used and column.remark not in (LEFT_OUT, UNUSABLE)
         if (found := guess(heading) or _own(column))
     }
-    _propose_name(draft, source, layout)
+    if not layout.name:
+        free = [h for h, c in layout.columns.items() if not c.used and h not in guesses]
+        _propose_name(draft, source, free)
     for heading, found in guesses.items():
         if found.role == "value" and _fits(source, heading, found):
             _propose_one(draft, source, heading, found, guesses)
@@ -74,12 +77,10 @@ def _own(column: Column) -> Guess | None:
     return Guess("error" if role == "error" else "value", (target,))
 
 
-def _propose_name(draft: _Draft, source: Source, layout: Layout) -> None:
+def _propose_name(draft: _Draft, source: Source, headings: list[str]) -> None:
     """Propose the first column of whole numbers or texts in which every row differs."""
-    if layout.name:
-        return
-    for heading, column in layout.columns.items():
-        if column.used or source.table[heading].dtype.kind not in "USOiu":
+    for heading in headings:
+        if source.table[heading].dtype.kind not in "USOiu":
             continue
         cells = texts_of(source, heading, 0, _ROWS)
         decimal = any("." in cell and cell.replace(".", "").isdigit() for cell in cells)
@@ -200,5 +201,5 @@ def _is_code(number: float, magnitude: bool) -> bool:
 
 
 def _quoted(text: str) -> str:
-    escaped = text.replace("\\", "\\\\").replace('"', '\\"')
-    return f'"{escaped}"'
+    # A JSON string is a TOML string, but for the delete character.
+    return json.dumps(text, ensure_ascii=False).replace("\x7f", "\\u007f")
