@@ -9,6 +9,7 @@ band is off by a few per cent (`MISFIT`). The same seed gives the same files.
 """
 
 import sys
+from functools import lru_cache
 from pathlib import Path
 
 import numpy as np
@@ -96,14 +97,20 @@ def truth_of(name, temperature, radius, av, distance):
     return {key: v if isinstance(v, str) else float(f"{v:.6g}") for key, v in row.items()}
 
 
+@lru_cache
+def extinction_curve(band):
+    """Return A(wavelength) / A(0.55 um) at the nodes of a band."""
+    law = G23(Rv=3.1)
+    return law(load_band(band).wavelength_m * units.m) / law(0.55 * units.um)
+
+
 def band_flux(band, star):
     """Return the band mean of F_lambda of a blackbody behind dust, in W m-3."""
     curve = load_band(band)
     wavelength = curve.wavelength_m * units.m
     scale = 1.0 * units.W / (units.m**3 * units.sr)
     radiance = BlackBody(star["temperature"] * units.K, scale=scale)(wavelength).value
-    law = G23(Rv=3.1)
-    dimming = law.extinguish(wavelength, Av=star["av"] / float(law(0.55 * units.um)))
+    dimming = 10.0 ** (-0.4 * star["av"] * extinction_curve(band))
     radius = 0.5 * (star["angular_diameter"] * units.mas).to_value(units.rad)
     return float(np.pi * radius**2 * (radiance * dimming) @ curve.weight)
 

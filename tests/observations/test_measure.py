@@ -4,7 +4,7 @@ import math
 
 import pytest
 from astropy import units as u
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from starkiln.errors import InputError
@@ -19,6 +19,7 @@ def one(photometry, **rest):
     return found
 
 
+@settings(deadline=None)
 @given(value=st.floats(5.0, 20.0), band=st.sampled_from(band_names()))
 def test_ab_magnitudes_are_astropys(value, band):
     # astropy.units.ABmag is Oke & Gunn's definition; F_nu to F_lambda at the pivot

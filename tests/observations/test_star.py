@@ -4,7 +4,7 @@ import pickle
 
 import pytest
 from astropy import units as u
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from starkiln.errors import BandError, InputError
@@ -98,6 +98,7 @@ def test_limits_alone_make_no_star():
         Star("x", {"2MASS J": (">", 15.0)})
 
 
+@settings(deadline=None)
 @given(st.permutations(list(PHOTOMETRY)))
 def test_the_order_of_the_bands_does_not_matter(order):
     star = Star("x", {band: PHOTOMETRY[band] for band in order})

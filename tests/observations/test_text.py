@@ -74,6 +74,12 @@ def test_the_same_stars_however_they_are_written(tmp_path, expected, content):
     assert stars_of(tmp_path / "other.txt", content) == expected
 
 
+def test_a_row_of_marks_for_missing_is_no_rule(tmp_path):
+    good, bad = stars_of(tmp_path / "a.txt", "Gaia_G e_Gaia_G\n10 0.1\n--- ---\n")
+    assert good.bands == ("Gaia G",)
+    assert "row 2, no band can be used" in bad.message
+
+
 def test_names_keep_zeros_commas_and_greek(tmp_path):
     content = 'name,Gaia G,e_Gaia G\n007,10,0.01\n"b, c",10,0.01\n\u03b1 Adrae,10,0.01\n'
     stars = stars_of(tmp_path / "a.csv", content)

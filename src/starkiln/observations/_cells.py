@@ -26,7 +26,7 @@ def numbers_of(source: Source, cells: Cells, start: int, stop: int) -> list[Numb
     data = _plain(source.cells(cells.heading, start, stop))
     codes = [code for item in cells.missing if isinstance(code := _as_number(item), float)]
     if data.dtype.kind in "fiub":
-        values = np.ma.filled(data.astype(float), math.nan).tolist()
+        values = _doubles(data).tolist()
         return [None if _is_code(value, codes) else value for value in values]
     words = _words(cells)
     return [
@@ -58,6 +58,17 @@ def parse_number(text: str, decimal_comma: bool) -> float | str:
         return text
 
 
+def _doubles(data: Any) -> np.ndarray:
+    """Return numbers in double precision, NaN where masked.
+
+    A number in single precision is taken by the decimals that it prints, so that
+    10.23 is the same star in FITS and in text.
+    """
+    if data.dtype.kind == "f" and data.dtype.itemsize == 4:
+        return np.asarray(np.ma.filled(data, np.nan).astype(str), dtype=float)
+    return np.asarray(np.ma.filled(data.astype(float), math.nan))
+
+
 def _plain(column: Any) -> Any:
     """Return a column, with or without unit, as a bare masked array."""
     return np.ma.asarray(column.value if hasattr(column, "to_value") else column)
@@ -87,5 +98,4 @@ def _number(text: str, words: set[str], codes: list[float], decimal_comma: bool)
 
 
 def _is_code(value: float, codes: list[float]) -> bool:
-    # A code kept in single precision is not exactly the one that the sheet names.
-    return math.isnan(value) or any(math.isclose(value, code, rel_tol=1e-6) for code in codes)
+    return math.isnan(value) or any(math.isclose(value, code) for code in codes)

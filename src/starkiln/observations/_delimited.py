@@ -16,8 +16,9 @@ __all__ = ["delimited"]
 
 _DELIMITERS = {",": "commas", ";": "semicolons", "\t": "tabs", "|": "bars"}
 _NUMBER = re.compile(r"[+-]?(\d+[.,]?\d*|[.,]\d+)([eE][+-]?\d+)?")
-#: A line that rules off a heading: dashes, and the separators between them.
-_RULE = re.compile(r"(?=.*-{2})[\s|+:=,;-]+")
+#: A line that rules off a heading: dashes, and the separators between them. Three
+#: dashes or fewer stand for "missing" in some catalogues.
+_RULE = re.compile(r"(?=.*-{4})[\s|+:=;-]+")
 
 Row = tuple[int, list[str]]  # the line's number in the file, and its cells
 
@@ -27,6 +28,8 @@ class _Lines:
 
     Attributes
     ----------
+    path : pathlib.Path
+        Of the file, for messages.
     rows : list of (int, str)
         Line number in the file and line.
     comments : list of str
@@ -35,7 +38,8 @@ class _Lines:
         How many lines with `#` follow after it.
     """
 
-    def __init__(self, text: str) -> None:
+    def __init__(self, path: Path, text: str) -> None:
+        self.path = path
         self.rows: list[tuple[int, str]] = []
         self.comments: list[str] = []
         self.later = 0
@@ -60,7 +64,7 @@ class _Lines:
 
     def split(self, delimiter: str) -> list[Row]:
         """Cut the rows into cells."""
-        return _split(self.rows, delimiter)
+        return _split(self.path, self.rows, delimiter)
 
 
 def delimited(path: Path, text: str, remarks: list[str]) -> tuple[Any, str]:
@@ -83,11 +87,11 @@ def delimited(path: Path, text: str, remarks: list[str]) -> tuple[Any, str]:
     CatalogueError
         No headings, ragged, or two headings alike.
     """
-    lines = _Lines(text)
+    lines = _Lines(path, text)
     if not lines.rows:
         raise CatalogueError(f"{path}: there are only comments, no table")
     delimiter = lines.delimiter()
-    header, units, rows = _header(path, lines, delimiter)
+    header, units, rows = _header(lines, delimiter)
     while header and not header[-1].strip():
         header.pop()
     _check_ragged(path, header, [(0, units), *rows] if units else rows, delimiter)
@@ -121,7 +125,7 @@ def _check_ragged(path: Path, header: list[str], rows: list[Row], delimiter: str
             )
 
 
-def _split(lines: list[tuple[int, str]], delimiter: str) -> list[Row]:
+def _split(path: Path, lines: list[tuple[int, str]], delimiter: str) -> list[Row]:
     texts = [line for _, line in lines]
     if delimiter == " ":
         texts = [line.strip().replace("\t", " ") for line in texts]
@@ -134,12 +138,13 @@ def _split(lines: list[tuple[int, str]], delimiter: str) -> list[Row]:
             rows.append((number, cells))
     except csv.Error as error:
         number = lines[min(reader.line_num, len(lines)) - 1][0]
-        raise CatalogueError(f"line {number} cannot be read: {error}") from error
+        raise CatalogueError(f"{path}, line {number} cannot be read: {error}") from error
     return rows
 
 
-def _header(path: Path, lines: _Lines, delimiter: str) -> tuple[list[str], list[str], list[Row]]:
+def _header(lines: _Lines, delimiter: str) -> tuple[list[str], list[str], list[Row]]:
     """Return the headings, the units (empty for none) and the rows below them."""
+    path = lines.path
     rules = [i for i, (_, line) in enumerate(lines.rows[:4]) if _RULE.fullmatch(line)]
     for place in reversed(rules):
         del lines.rows[place]
@@ -151,7 +156,7 @@ def _header(path: Path, lines: _Lines, delimiter: str) -> tuple[list[str], list[
     if numbers:
         # Some programs write the heading as the last comment.
         for comment in reversed(lines.comments[-1:]):
-            commented = _split([(0, comment.strip())], delimiter)[0][1]
+            commented = _split(path, [(0, comment.strip())], delimiter)[0][1]
             if len(commented) == len(first):
                 return commented, [], rows
         if 2 * len(numbers) >= len(first):

@@ -134,15 +134,13 @@ def _fits(path: Path, raw: bytes, remarks: list[str]) -> Any:
                 raise CatalogueError(f"{path}: the FITS file holds no table, only images")
             if len(tables) > 1:
                 remarks.append(f"the file holds {len(tables)} tables; the first is read")
-            table = Table.read(hdus, hdu=tables[0], format="fits")
-            table.convert_bytestring_to_unicode()
+            return Table.read(hdus, hdu=tables[0], format="fits")
     except CatalogueError:
         raise
     except Exception as error:  # a damaged file raises many kinds
         raise CatalogueError(
             f"{path}: the FITS table cannot be read: {_first_line(error)}"
         ) from error
-    return table
 
 
 def _votable(path: Path, raw: bytes, remarks: list[str]) -> Any:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterable
 from dataclasses import dataclass
+from functools import lru_cache
 
 from starkiln.observations._from_python import nearest
 from starkiln.observations._quantities import BY_NAME
@@ -40,20 +41,6 @@ _AMBIGUOUS = ("grp", "gbp")
 _ERROR_HEADS = ("e_", "err_", "error_", "sigma_", "sig_", "unc_")
 _ERROR_TAILS = ("_error", "_err", "_sigma", "_unc", "_uncertainty")
 _LIMIT_HEADS = ("l_",)
-_SYSTEM_WORDS = (
-    "gaia",
-    "2mass",
-    "twomass",
-    "allwise",
-    "wise",
-    "sdss",
-    "johnson",
-    "cousins",
-    "bessell",
-    "panstarrs",
-    "ps1",
-    "galex",
-)
 
 
 @dataclass(frozen=True)
@@ -130,12 +117,19 @@ def looks_like_band(heading: str) -> tuple[str, list[str]]:
 def _near_bands(key: str) -> list[str]:
     names = {heading_key(name): name for name in band_names()}
     near = [names[word] for word in nearest(key, names, 3)]
-    system = next((word for word in _SYSTEM_WORDS if key.startswith(word)), None)
+    system = next((word for word in _system_words() if key.startswith(word)), None)
     if system is not None:
         # `Gaia X` and `WISE W5` are meant as bands, `gaia_id` and `WISE_ra` are not.
         rest = key.removeprefix(system)
         return near if re.fullmatch(r"[a-z]|[a-z][0-9]|[bgr]p|k[a-z]", rest) else []
     return [n for n in near if len(key) >= 5 and _distance(key, heading_key(n)) <= 1]
+
+
+@lru_cache(maxsize=1)
+def _system_words() -> list[str]:
+    """Return how a band's name may begin, the longest first."""
+    words = {heading_key(name.rpartition(" ")[0]) for name in band_names()}
+    return sorted(words | {"twomass", "allwise", "bessell", "ps1"}, key=len, reverse=True)
 
 
 def _target(text: str) -> str:

@@ -55,7 +55,7 @@ def _mark_rest(source: Source, layout: Layout, headings: Headings) -> None:
             what = "error" if role == "error" else "limit flag"
             layout.mark(heading, f"{what} of {target}", remark=f"no {target} makes use of it")
     bands = {band.reading.band for band in layout.bands}
-    alike = []
+    alike: dict[str, str] = {}
     for heading, column in layout.columns.items():
         if column.meaning or column.remark:
             continue
@@ -63,7 +63,8 @@ def _mark_rest(source: Source, layout: Layout, headings: Headings) -> None:
         found = guess(heading)
         if found and found.meanings[0] not in BY_NAME and not bands & set(found.meanings):
             layout.mark(heading, remark=f"perhaps {found.text()}; a column sheet can say so")
-            alike += [heading] if found.role == "value" else []
+            if found.role == "value":
+                alike[heading] = found.meanings[0]
     bare = [h for h, column in layout.columns.items() if column.remark == NO_ERROR]
     where = f"`starkiln inspect {source.path}` proposes"
     if bare:
@@ -79,11 +80,11 @@ def _mark_rest(source: Source, layout: Layout, headings: Headings) -> None:
         )
     if not (layout.bands or layout.errors):
         unused = [heading for heading, column in layout.columns.items() if not column.used]
-        some = ", ".join(unused[:8]) + (", ..." if len(unused) > 8 else "")
+        some = [f"'{heading}' may be {band}" for heading, band in alike.items()] or unused
         layout.errors.append(
-            f"{source.path}: no usable band among the headings ({some}); name a column after its "
-            "band, such as '2MASS J' with its error 'e_2MASS J', or bind it in a column sheet: "
-            f"{where} one"
+            f"{source.path}: no usable band among the headings ({', '.join(some[:8])}"
+            f"{', ...' if len(some) > 8 else ''}); name a column after its band, such as "
+            f"'2MASS J' with its error 'e_2MASS J', or bind it in a column sheet: {where} one"
         )
 
 

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
+import json
 import math
 from dataclasses import dataclass, field
 
 from starkiln.errors import InputError
-from starkiln.observations._cells import numbers_of
+from starkiln.observations._cells import numbers_of, texts_of
 from starkiln.observations._files import Source
 from starkiln.observations._headings import heading_key, split_unit
 from starkiln.observations._measure import BRIGHTEST, FAINTEST
@@ -49,7 +50,9 @@ def propose_sheet(source: Source, layout: Layout, sheet: Sheet) -> str:
         if not column.used and column.remark not in (LEFT_OUT, UNUSABLE)
         if (found := guess(heading) or _own(column))
     }
-    _propose_name(draft, source, layout)
+    if not layout.name:
+        free = [h for h, c in layout.columns.items() if not c.used and h not in guesses]
+        _propose_name(draft, source, free)
     for heading, found in guesses.items():
         if found.role == "value" and _fits(source, heading, found):
             _propose_one(draft, source, heading, found, guesses)
@@ -74,14 +77,12 @@ def _own(column: Column) -> Guess | None:
     return Guess("error" if role == "error" else "value", (target,))
 
 
-def _propose_name(draft: _Draft, source: Source, layout: Layout) -> None:
+def _propose_name(draft: _Draft, source: Source, headings: list[str]) -> None:
     """Propose the first column of whole numbers or texts in which every row differs."""
-    if layout.name:
-        return
-    for heading, column in layout.columns.items():
-        if column.used or source.table[heading].dtype.kind not in "UOiu":
+    for heading in headings:
+        if source.table[heading].dtype.kind not in "USOiu":
             continue
-        cells = [str(cell).strip() for cell in source.cells(heading, 0, _ROWS)]
+        cells = texts_of(source, heading, 0, _ROWS)
         decimal = any("." in cell and cell.replace(".", "").isdigit() for cell in cells)
         if len(set(cells)) == len(cells) and not decimal:
             draft.lines.append(f'{_quoted(heading)} = "name"  # every row of it differs')
@@ -196,9 +197,9 @@ def _missing(source: Source, layout: Layout, sheet: Sheet, draft: _Draft) -> lis
 def _is_code(number: float, magnitude: bool) -> bool:
     if magnitude and math.isfinite(number):
         return not BRIGHTEST <= number <= FAINTEST
-    return any(math.isclose(number, code, rel_tol=1e-6) for code in _CODES)
+    return any(math.isclose(number, code) for code in _CODES)
 
 
 def _quoted(text: str) -> str:
-    escaped = text.replace("\\", "\\\\").replace('"', '\\"')
-    return f'"{escaped}"'
+    # A JSON string is a TOML string, but for the delete character.
+    return json.dumps(text, ensure_ascii=False).replace("\x7f", "\\u007f")

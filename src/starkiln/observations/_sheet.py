@@ -174,7 +174,8 @@ def _binding(heading: str, entry: Any) -> Binding:
     if isinstance(entry, str):
         entry = {"means": entry}
     if not isinstance(entry, dict):
-        raise InputError(f"{where} = {entry!r}: write the name of what it is, or a table")
+        own = "; the sheet's own keys stand above [columns]" if heading in _TOP else ""
+        raise InputError(f"{where} = {entry!r}: write the name of what it is, or a table{own}")
     _known_keys(entry, _KEYS, where)
     system = str(entry.get("system", ""))
     if system and system.casefold() not in _SYSTEMS:

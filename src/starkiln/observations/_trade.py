@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from functools import lru_cache
 
 from starkiln.observations._headings import meaning_of
 from starkiln.observations._quantities import BY_NAME
@@ -38,20 +39,14 @@ _LETTERS = {
     "FUV": ("GALEX FUV",),
     "NUV": ("GALEX NUV",),
 }
-_SYSTEMS = {
-    "gaia": "Gaia",
-    "2mass": "2MASS",
+#: Words for a system, beside its own name in one word.
+_OTHER_SYSTEMS = {
     "twomass": "2MASS",
     "tmass": "2MASS",
-    "wise": "WISE",
     "allwise": "WISE",
-    "sdss": "SDSS",
     "ps1": "Pan-STARRS",
     "ps": "Pan-STARRS",
     "panstarrs": "Pan-STARRS",
-    "johnson": "Johnson",
-    "cousins": "Cousins",
-    "galex": "GALEX",
 }
 #: Words of a heading that say how a magnitude was made, not in which band.
 _MAGNITUDE_WORDS = {"mag", "mags", "m", "mpro", "magnitude", "psfmag", "modelmag", "phot"}
@@ -180,6 +175,12 @@ def _words(heading: str) -> list[str]:
     return [word for word in re.split(r"[^A-Za-z0-9]+", text) if word]
 
 
+@lru_cache(maxsize=1)
+def _systems() -> dict[str, str]:
+    own = {name.rpartition(" ")[0] for name in band_names()}
+    return {name.casefold(): name for name in own} | _OTHER_SYSTEMS
+
+
 def _survey(folded: list[str]) -> str:
     """Return the survey whose archive makes headings of this kind, or nothing."""
     if folded[:1] == ["phot"]:
@@ -188,8 +189,9 @@ def _survey(folded: list[str]) -> str:
 
 
 def _bands(words: list[str], survey: str, named: bool) -> tuple[str, ...]:
-    system = next((_SYSTEMS[w.casefold()] for w in words if w.casefold() in _SYSTEMS), survey)
-    rest = [word for word in words if word.casefold() not in _SYSTEMS]
+    systems = _systems()
+    system = next((systems[w.casefold()] for w in words if w.casefold() in systems), survey)
+    rest = [word for word in words if word.casefold() not in systems]
     if len(rest) != 1:
         return ()
     letter = rest[0]

@@ -28,7 +28,8 @@ def write_table(table: Any, path: str | Path, format: str) -> Path:
     path : str or pathlib.Path
     format : {"ecsv", "fits", "votable", "csv"}
         FITS holds ASCII text only: Greek letters are written by name, accents are
-        left away, anything else becomes `?`. CSV has no units.
+        left away, anything else becomes `?`. A unit that FITS does not know stands in the
+        column's description (TCOMM). CSV has no units.
 
     Returns
     -------
@@ -72,6 +73,9 @@ def _fits(table: Any) -> bytes:
             plain[name].description = f"{column.description or name} [{column.unit}]"
             plain[name].unit = None
     hdu = fits.table_to_hdu(plain)
+    for place, name in enumerate(plain.colnames, 1):
+        if plain[name].description:
+            hdu.header[f"TCOMM{place}"] = _ascii(plain[name].description)
     for key, value in table.meta.items():
         hdu.header.add_comment(_ascii(f"{key}: {value}"))
     stream = io.BytesIO()
@@ -97,15 +101,11 @@ def _votable(table: Any) -> bytes:
 
 
 def _ascii_column(column: Any) -> Any:
-    from astropy.table import MaskedColumn
+    from astropy.table import Column
 
     filled = column.filled("") if hasattr(column, "filled") else column
-    return MaskedColumn(
-        [_ascii(str(text)) for text in filled],
-        mask=getattr(column, "mask", None),
-        description=column.description,
-        dtype=str,
-    )
+    texts = [_ascii(str(text)) for text in filled]
+    return Column(texts, description=column.description, dtype=str)
 
 
 def _fits_unit(unit: Any) -> bool:
