@@ -29,8 +29,13 @@ def main():
     drawn = run(python, "-m", "starkiln", "figures", shown)
     if drawn:
         return drawn
+    say(f"starkiln report {shown}")
+    paged = run(python, "-m", "starkiln", "report", shown)
+    if paged:
+        return paged
     say(f"results: {folder / 'results.ecsv'}")
     say(f"figures: {folder / 'figures'}")
+    say(f"page:    {folder / 'report.html'}")
     return 0
 
 

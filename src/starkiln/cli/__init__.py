@@ -8,6 +8,7 @@ module of the command that was asked for is imported.
 from __future__ import annotations
 
 import argparse
+import shlex
 import sys
 from collections.abc import Sequence
 from importlib import import_module
@@ -44,6 +45,7 @@ def main(argv: Sequence[str] | None = None) -> int:
     words = list(sys.argv[1:] if argv is None else argv)
     parser = _parser(words)
     args = parser.parse_args(words)
+    args.command_line = shlex.join(["starkiln", *words])
     if args.command is None:
         parser.print_help(sys.stderr)
         return 2

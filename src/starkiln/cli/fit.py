@@ -103,6 +103,7 @@ def run(args: argparse.Namespace) -> int:
             workers=args.workers,
             file_format=args.format,
             progress=meter,
+            record={"command": args.command_line},
         )
     except KeyboardInterrupt:
         meter.end()

@@ -46,7 +46,9 @@ QUANTITIES: dict[str, Quantity] = {
     "logg": Quantity("dex(cm / s2)", "surface gravity", "phys.gravity"),
     "feh": Quantity("dex", "metallicity [Fe/H]", "phys.abund.Z"),
     "temperature_2": Quantity("K", "temperature of the second component", "phys.temperature"),
-    "area_ratio": Quantity("", "area of the second component over the first", "arith.ratio"),
+    "area_ratio": Quantity(
+        "", "area of the second component over the first", "phys.area;arith.ratio"
+    ),
 }
 
 

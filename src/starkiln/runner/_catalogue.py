@@ -7,7 +7,7 @@ import os
 import platform
 import shutil
 import time
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterator, Mapping
 from concurrent.futures import FIRST_COMPLETED, Future, wait
 from dataclasses import dataclass, field
 from datetime import UTC, datetime
@@ -85,6 +85,7 @@ def fit_catalogue(
     workers: int | None = None,
     file_format: str = "ecsv",
     progress: Callable[[Progress], None] | None = None,
+    record: Mapping[str, str] | None = None,
 ) -> Run:
     """Fit every row of a catalogue and leave the results in a run folder.
 
@@ -106,6 +107,8 @@ def fit_catalogue(
         Of `results` and `photometry`: ecsv, fits, votable or csv.
     progress : callable, optional
         Called with a `Progress` after every part.
+    record : mapping, optional
+        What else `run.json` shall tell of a new run, such as the `command`.
 
     Returns
     -------
@@ -127,7 +130,9 @@ def fit_catalogue(
     if len(catalogue) == 0:
         raise InputError(f"{catalogue.path} holds no rows")
     target = Path(folder)
-    meta = prepare(target, _identity(catalogue, recipe, file_format), _described(recipe))
+    meta = prepare(
+        target, _identity(catalogue, recipe, file_format), {**(record or {}), **_described(recipe)}
+    )
     if not meta["complete"]:
         _work(catalogue, target, recipe, _worker_count(workers, len(catalogue)), progress)
         join_parts(target, catalogue, recipe.keep_draws, file_format)

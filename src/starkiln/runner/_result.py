@@ -72,7 +72,7 @@ class FitResult:
     quantities: dict[str, np.ndarray] = field(repr=False)
     problem: Problem = field(repr=False)
     samples: Samples = field(repr=False)
-    distance: DistancePosterior | None = field(repr=False)
+    distance_posterior: DistancePosterior | None = field(repr=False)
 
     @property
     def converged(self) -> bool:

@@ -95,7 +95,7 @@ def fit(
         seed=seed,
         problem=problem,
         samples=samples,
-        distance=distance,
+        distance_posterior=distance,
     )
 
 

@@ -42,7 +42,7 @@ class PopulationProposal:
         weights = [(1.0 - _DEFENCE) * len(group) / len(population) for group in groups]
         # A tail that few of the population reached is proposed by wide kernels all the
         # same, and so can be left again.
-        self._points = [*groups, population[:: len(population) // 64]]
+        self._points: list[np.ndarray] = [*groups, population[:: len(population) // 64]]
         self._roots = [*roots, _root(population, 1)]
         self._shares = np.cumsum([*weights, _DEFENCE])
         self._inverses = [np.linalg.inv(root) for root in self._roots]
