@@ -66,7 +66,7 @@ class PopulationProposal:
         """
         n, dimension = coords.shape
         group = np.searchsorted(self._shares, random.uniform(size=n) * self._shares[-1])
-        place = random.uniform(size=n)
+        place = np.asarray(random.uniform(size=n))
         step = random.standard_normal((n, dimension))
         step *= np.sqrt(self._nu / random.chisquare(self._nu, size=(n, 1)))
         new = np.empty_like(coords)
