@@ -3,14 +3,12 @@
 from __future__ import annotations
 
 import argparse
-import sys
 from pathlib import Path
 from typing import Any
 
 from starkiln.cli._options import quantity
+from starkiln.cli._tables import add_format, print_table
 from starkiln.errors import InputError
-
-_FORMATS = {"ecsv": "ascii.ecsv", "votable": "votable", "csv": "ascii.csv"}
 
 _NOTES = """\
 By --mass: homogeneous stars. --model structure (default) solves all four equations of
@@ -48,9 +46,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
         "--model", choices=["structure", "standard"], help="with --mass (default structure)"
     )
     parser.add_argument("--seed", type=int, default=0, metavar="N", help="default 0")
-    parser.add_argument(
-        "--format", choices=[*_FORMATS, "fits", "text"], default="text", help="default text"
-    )
+    add_format(parser)
 
 
 def run(args: argparse.Namespace) -> int:
@@ -68,7 +64,7 @@ def run(args: argparse.Namespace) -> int:
         table = _by_table(args)
     else:
         table = _by_run(args)
-    _print_table(table, args.format)
+    print_table(table, args.format)
     return 3 if "status" in table.colnames and any(table["status"] != "ok") else 0
 
 
@@ -127,16 +123,3 @@ def _columns(path: str) -> dict[str, list[Any]]:
     if not set(columns) & set(PRESSURE_INPUTS):
         raise InputError(f"{path}: no column of {', '.join(PRESSURE_INPUTS)}")
     return columns
-
-
-def _print_table(table: Any, form: str) -> None:
-    if form == "text":
-        for name in table.colnames[1:]:
-            if table[name].dtype.kind == "f":
-                table[name].format = ".5g"
-        lines = table.pformat(max_lines=-1, max_width=-1, show_unit=True)
-        sys.stdout.write("\n".join(lines) + "\n")
-    elif form == "fits":
-        table.write(sys.stdout.buffer, format="fits")
-    else:
-        table.write(sys.stdout, format=_FORMATS[form])
