@@ -186,3 +186,18 @@ def test_bad_evidence_is_refused():
         light_from_values((1e4, 1.0))
     with pytest.raises(InputError, match="too few"):
         light_from_draws(np.ones(3), np.ones(3))
+
+
+def test_light_at_a_mass_fraction():
+    # The run of a direct model of the same star, and the ends of the tabulated depths.
+    found = posterior(Evidence(mass=(20.0, 0.01), feh=(0.0, 0.05)))
+    assert found.radiation_fraction_at(0.0) == pytest.approx(found.draws["radiation_fraction_core"])
+    at_half = found.radiation_fraction_at(0.5)
+    assert at_half == pytest.approx(found.draws["radiation_fraction_at_0.5"])
+    model = load_grid().at(np.log(20.0), 0.0, np.log(0.0134))
+    young = found.draws["age_fraction"] < 0.05
+    assert np.median(at_half[young]) == pytest.approx(model.share_at[2], rel=0.03)
+    table = pressure_table({"mass": [20.0]}, at=0.5)
+    assert table["radiation_to_gas_at"][0] < table["radiation_to_gas_core"][0]
+    with pytest.raises(InputError, match=r"0 to 0\.99"):
+        found.radiation_fraction_at(1.0)

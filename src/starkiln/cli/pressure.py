@@ -45,6 +45,9 @@ def configure(parser: argparse.ArgumentParser) -> None:
     parser.add_argument(
         "--model", choices=["structure", "standard"], help="with --mass (default structure)"
     )
+    parser.add_argument(
+        "--at", type=float, metavar="Q", help="ratios at this m/M too (0 to 0.99; TABLE, --run)"
+    )
     parser.add_argument("--seed", type=int, default=0, metavar="N", help="default 0")
     add_format(parser)
 
@@ -77,6 +80,10 @@ def _check_companions(args: argparse.Namespace, source: str) -> None:
                 f"--{wrong[0]} goes with --mass only; the composition of {source} follows from "
                 f"its column feh"
             )
+    if args.at is not None and source == "--mass":
+        raise InputError("--at goes with TABLE or --run only")
+    if args.at is not None and not 0.0 <= args.at <= 0.99:
+        raise InputError(f"--at {args.at:g} is out of bounds: give a mass fraction of 0 to 0.99")
     if args.targets is not None and source != "--run":
         raise InputError("--targets goes with --run only")
 
@@ -98,7 +105,7 @@ def _by_mass(args: argparse.Namespace) -> Any:
 def _by_table(args: argparse.Namespace) -> Any:
     from starkiln.derived import pressure_table
 
-    return pressure_table(_columns(args.table), seed=args.seed)
+    return pressure_table(_columns(args.table), seed=args.seed, at=args.at)
 
 
 def _by_run(args: argparse.Namespace) -> Any:
@@ -109,7 +116,7 @@ def _by_run(args: argparse.Namespace) -> Any:
     names = [str(name) for name in done.results["name"]]
     draws = [done.draws(row) for row in range(1, len(names) + 1)]
     known = None if args.targets is None else _columns(args.targets)
-    return pressure_table_of_draws(names, draws, known, seed=args.seed)
+    return pressure_table_of_draws(names, draws, known, seed=args.seed, at=args.at)
 
 
 def _columns(path: str) -> dict[str, list[Any]]:

@@ -61,6 +61,22 @@ class PressurePosterior:
     n_eff: float = 0.0
     reason: str = ""
 
+    def radiation_fraction_at(self, mass_fraction: float) -> np.ndarray:
+        """Return draws of P_rad/P at m/M from 0 to 0.99, between the depths of the grid."""
+        depths = (0.0, *load_grid().depths)
+        if not 0.0 <= mass_fraction <= depths[-1]:
+            raise InputError(
+                f"mass fraction = {mass_fraction:g} is out of bounds: give 0 to {depths[-1]:g}"
+            )
+        names = ["_core", *(f"_at_{depth:g}" for depth in depths[1:])]
+        shares = np.stack([self.draws[f"radiation_fraction{name}"] for name in names])
+        # Near the centre the run goes as m^(2/3).
+        places = np.array(depths) ** (2.0 / 3.0)
+        place = mass_fraction ** (2.0 / 3.0)
+        above = min(int(np.searchsorted(places, place, side="right")), places.size - 1)
+        share = (place - places[above - 1]) / (places[above] - places[above - 1])
+        return np.asarray(shares[above - 1] + share * (shares[above] - shares[above - 1]))
+
 
 def light_from_values(
     temperature: tuple[float, float],

@@ -30,6 +30,21 @@ _FAR = 11.83
 _KEEP = 40.0
 
 
+def assumptions() -> dict[str, float]:
+    """Return the numbers that were chosen, for the text that goes with the answers."""
+    low, high = np.exp(load_grid().log_mass)
+    return {
+        "imf_slope": IMF_SLOPE,
+        "solar_metals": SOLAR_METALS,
+        "feh": USUAL_FEH[0],
+        "e_feh": USUAL_FEH[1],
+        "scatter_luminosity": SCATTER_LUMINOSITY,
+        "scatter_temperature": SCATTER_TEMPERATURE,
+        "mass_low": float(low),
+        "mass_high": float(high),
+    }
+
+
 @dataclass(frozen=True)
 class Light:
     """What was measured of luminosity and temperature: equal Gaussians at many centres.

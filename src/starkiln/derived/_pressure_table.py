@@ -36,7 +36,9 @@ _EXACT = 1e-3
 _FEW = 50.0
 
 
-def pressure_table(columns: Mapping[str, Sequence[Any]], *, seed: int = 0) -> Any:
+def pressure_table(
+    columns: Mapping[str, Sequence[Any]], *, seed: int = 0, at: float | None = None
+) -> Any:
     """Return the pressure ratios of a table of targets.
 
     Parameters
@@ -46,12 +48,15 @@ def pressure_table(columns: Mapping[str, Sequence[Any]], *, seed: int = 0) -> An
         for missing. Where radius and temperature are given, luminosity follows from them.
     seed : int
         A row's draws depend on it and on the row's own values alone.
+    at : float, optional
+        Mass fraction, 0 to 0.99, at which the ratios are given too.
 
     Returns
     -------
     astropy.table.Table
-        One row per target: `COLUMNS` with `_lo` and `_hi`, `status` (`ok`, `off_grid`,
-        `rejected`), `flags` and `message`.
+        One row per target: `COLUMNS` with `_lo` and `_hi`, `radiation_fraction_at` and
+        `radiation_to_gas_at` where asked for, `status` (`ok`, `off_grid`, `rejected`),
+        `flags` and `message`.
     """
     count = len(next(iter(columns.values())))
     rows = []
@@ -59,24 +64,33 @@ def pressure_table(columns: Mapping[str, Sequence[Any]], *, seed: int = 0) -> An
         given = {key: float(columns[key][i]) for key in columns if key != "name"}
         given = {key: value for key, value in given.items() if not np.isnan(value)}
         name = str(columns["name"][i]) if "name" in columns else f"row {i + 1}"
-        rows.append({"name": name} | _row(given, name, seed))
+        rows.append({"name": name} | _row(given, name, seed, at))
     return assemble(rows)
 
 
-def pressure_row(evidence: Evidence, rng: np.random.Generator) -> dict[str, Any]:
+def pressure_row(
+    evidence: Evidence, rng: np.random.Generator, at: float | None = None
+) -> dict[str, Any]:
     """Return one row of the table: medians, intervals, status, flags and message.
 
     Parameters
     ----------
     evidence : Evidence
     rng : numpy.random.Generator
+    at : float, optional
+        Mass fraction at which the ratios are given too.
     """
     posterior = pressure_posterior(evidence, rng=rng)
     if posterior.reason:
         return _what_is_left(evidence, posterior.reason, rng)
     row: dict[str, Any] = {}
     for name in COLUMNS:
-        row |= edges(name, posterior.draws[name])
+        if name in posterior.draws:
+            row |= edges(name, posterior.draws[name])
+    if at is not None:
+        share = posterior.radiation_fraction_at(at)
+        row |= edges("radiation_fraction_at", share)
+        row |= edges("radiation_to_gas_at", share / (1.0 - share))
     flags, message = _remarks(evidence, posterior)
     return row | {"status": "ok", "flags": flags, "message": message}
 
@@ -87,6 +101,7 @@ def pressure_table_of_draws(
     known: Mapping[str, Sequence[Any]] | None = None,
     *,
     seed: int = 0,
+    at: float | None = None,
 ) -> Any:
     """Return the pressure ratios of fitted stars, from their posterior draws.
 
@@ -100,6 +115,8 @@ def pressure_table_of_draws(
         Columns `name` and any of `mass`, `logg`, `feh`, with errors: what else is known of
         stars, by name.
     seed : int
+    at : float, optional
+        As for `pressure_table`.
 
     Returns
     -------
@@ -115,7 +132,7 @@ def pressure_table_of_draws(
     rows = []
     for name, one in zip(names, draws, strict=True):
         given = more.get(name, {})
-        rows.append({"name": name} | _row_of_draws(one, given, name, seed))
+        rows.append({"name": name} | _row_of_draws(one, given, name, seed, at))
     return assemble(rows)
 
 
@@ -138,7 +155,11 @@ def _by_name(
 
 
 def _row_of_draws(
-    draws: Mapping[str, Any] | None, given: dict[str, float], name: str, seed: int
+    draws: Mapping[str, Any] | None,
+    given: dict[str, float],
+    name: str,
+    seed: int,
+    at: float | None,
 ) -> dict[str, Any]:
     columns = [] if draws is None else list(draws.keys())
     if draws is None or "temperature" not in columns or "luminosity" not in columns:
@@ -155,7 +176,7 @@ def _row_of_draws(
         )
         light = light_from_draws(luminosity, temperature)
         stamp = given | {"first": float(luminosity[0]), "last": float(temperature[-1])}
-        return pressure_row(_evidence(light, given), star_generator(seed, name, stamp))
+        return pressure_row(_evidence(light, given), star_generator(seed, name, stamp), at)
     except InputError as error:
         return {"status": "rejected", "flags": "", "message": str(error)}
 
@@ -167,11 +188,11 @@ def star_generator(seed: int, name: str, values: Mapping[str, Any]) -> np.random
     return np.random.default_rng([seed, *np.frombuffer(digest, dtype=np.uint32)])
 
 
-def _row(given: dict[str, float], name: str, seed: int) -> dict[str, Any]:
+def _row(given: dict[str, float], name: str, seed: int, at: float | None) -> dict[str, Any]:
     try:
         _check(given)
         light = _light(given)
-        return pressure_row(_evidence(light, given), star_generator(seed, name, given))
+        return pressure_row(_evidence(light, given), star_generator(seed, name, given), at)
     except InputError as error:
         return {"status": "rejected", "flags": "", "message": str(error)}
 
@@ -235,6 +256,10 @@ def _remarks(evidence: Evidence, posterior: PressurePosterior) -> tuple[str, str
             "an unresolved companion would make luminosity and mass too high",
         ),
         "at_edge": (edge, f"the mass runs into the bounds {low:.1f} to {high:.0f} solMass"),
+        "near_the_end": (
+            float(np.median(posterior.draws["age_fraction"])) > 0.95,
+            "the star may have left the main sequence, where these models end",
+        ),
         "few_points": (posterior.n_eff < _FEW, "the data pull apart; the draws are rough"),
     }
     kept = {name: text for name, (true, text) in remarks.items() if true}
