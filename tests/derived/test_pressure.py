@@ -83,6 +83,20 @@ def test_luminosity_from_radius_errs_with_temperature():
     assert light.mean[0] == pytest.approx(np.log10(36.0 * (30000.0 / 5772.0) ** 4), rel=1e-12)
 
 
+def test_temperature_from_luminosity_and_radius_and_luminosity_alone():
+    # T = (L/R^2)^(1/4): d ln T = (d ln L)/4 - (d ln R)/2.
+    light = light_from_values(None, (9000.0, 900.0), (5.0, 0.1))
+    assert light.mean[1] == pytest.approx(np.log10(5772.0 * (9000.0 / 25.0) ** 0.25), rel=1e-12)
+    e_l, e_r = 0.1, 0.02
+    shared, own = e_l**2 / 4, (e_l**2 + 4 * e_r**2) / 16
+    expected = np.array([[e_l**2, shared], [shared, own]]) / np.log(10) ** 2
+    assert light.covariance == pytest.approx(expected, rel=1e-12)
+    alone = posterior(Evidence(light_from_values(None, (9000.0, 900.0)))).draws
+    both = posterior(Evidence(light_from_values((25000.0, 500.0), (9000.0, 900.0)))).draws
+    assert alone["age_fraction"].std() > 1.3 * both["age_fraction"].std()
+    assert np.median(alone["mass"]) == pytest.approx(np.median(both["mass"]), rel=0.2)
+
+
 def test_draws_keep_their_mean_and_covariance():
     rng = np.random.default_rng(2)
     pairs = rng.multivariate_normal([4.0, 4.4], [[0.01, 0.004], [0.004, 0.002]], 256)
@@ -138,14 +152,15 @@ TARGETS = {
 def test_table_answers_every_row():
     table = pressure_table(TARGETS)
     assert list(table["name"]) == TARGETS["name"]
-    assert list(table["status"]) == ["ok", "off_grid", "rejected", "rejected", "ok", "ok"]
+    assert list(table["status"]) == ["ok", "off_grid", "rejected", "off_grid", "ok", "ok"]
     assert table["radiation_to_gas_lo"][0] < table["radiation_to_gas"][0]
     assert table["radiation_to_gas"][0] < table["radiation_to_gas_hi"][0]
     # The giant: gamma_e = 10^-4.815 (1 + X) L/M from the luminosity and mass given.
     assert table["gamma_e"][1] == pytest.approx(10**-4.815 * 1.72 * 75.0, rel=0.06)
     assert table["radiation_to_gas"].mask[1]
     assert "temperature = -3" in table["message"][2]
-    assert "temperature is missing" in table["message"][3]
+    assert table["mass"].mask[3]
+    assert "fainter" in table["message"][3]
     assert "mass_from_luminosity" in table["flags"][0]
     assert "companion" in table["message"][0]
     assert "mass_from_luminosity" not in table["flags"][5]
@@ -184,6 +199,8 @@ def test_bad_evidence_is_refused():
         posterior(Evidence())
     with pytest.raises(InputError, match="luminosity or a radius"):
         light_from_values((1e4, 1.0))
+    with pytest.raises(InputError, match="luminosity or a radius"):
+        light_from_values(None, None, (1.0, 0.1))
     with pytest.raises(InputError, match="too few"):
         light_from_draws(np.ones(3), np.ones(3))
 

@@ -15,10 +15,10 @@ By --mass: homogeneous stars. --model structure (default) solves all four equati
 structure, 1.6 to 120 solMass; --model standard is Eddington's, of any mass, in which light
 carries the same share of the pressure everywhere.
 
-By TABLE: targets with the columns temperature (K) and luminosity (solLum) or radius (solRad),
-or mass (solMass) alone; where known also logg, mass (dynamical), feh, name, and the error of
-each under e_. Where radius and temperature are given, luminosity follows from them, with its
-covariance. By --run: the stars of a run with their posterior draws of temperature and
+By TABLE: targets with two of the columns temperature (K), luminosity (solLum) and radius
+(solRad), or luminosity or mass (solMass) alone; where known also logg, mass (dynamical), feh,
+name, and the error of each under e_. Where radius and temperature are given, luminosity
+follows from them, with its covariance. By --run: the stars of a run with their posterior draws of temperature and
 luminosity; --targets adds logg, mass or feh by name. Mass, age and ratios are then drawn
 jointly from main-sequence models; _lo and _hi are the 16th and 84th percentiles.
 

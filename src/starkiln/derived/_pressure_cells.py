@@ -28,6 +28,7 @@ _CELL_VARIANCE = np.array([0.02, 0.01, 0.02, 0.012, 0.06]) ** 2
 #: Mahalanobis distance squared of three sigma in two dimensions.
 _FAR = 11.83
 _KEEP = 40.0
+_WIDER = 1.3
 
 
 def assumptions() -> dict[str, float]:
@@ -70,6 +71,13 @@ class Light:
         """Covariance of all."""
         spread = self.centres - self.mean
         return np.asarray(self.covariance + spread.T @ spread / len(spread))
+
+    @property
+    def coarse(self) -> Light:
+        """One Gaussian in place of many, a little wider: where to look, not what to believe."""
+        if len(self.centres) == 1:
+            return self
+        return Light(self.mean[None], _WIDER * self.total_covariance)
 
 
 @dataclass(frozen=True)

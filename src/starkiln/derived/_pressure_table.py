@@ -34,6 +34,8 @@ INPUTS = {
 _EXACT = 1e-3
 #: Fewer effective points than this are not trusted.
 _FEW = 50.0
+#: Variance of log10 T beyond which a temperature was not given.
+_KNOWN = 0.25
 
 
 def pressure_table(
@@ -224,17 +226,14 @@ def _check(given: dict[str, float]) -> None:
 
 
 def _light(given: dict[str, float]) -> Light | None:
-    temperature = _pair(given, "temperature", 0.0)
-    radius, luminosity = _pair(given, "radius", 0.0), _pair(given, "luminosity", 0.0)
-    if temperature is None:
-        if "mass" in given:
-            return None
-        raise InputError("temperature is missing: give it with luminosity or radius, or a mass")
-    if radius is None and luminosity is None:
-        if "mass" in given:
-            return None
-        raise InputError("luminosity and radius are missing: give one of them, or a mass")
-    return light_from_values(temperature, luminosity, radius)
+    names = ("temperature", "luminosity", "radius")
+    if "luminosity" in given or {"temperature", "radius"} <= set(given):
+        return light_from_values(*(_pair(given, name, 0.0) for name in names))
+    if "mass" in given:
+        return None
+    raise InputError(
+        "too little to go by: give luminosity, or temperature with radius or luminosity, or a mass"
+    )
 
 
 def _pair(given: dict[str, float], name: str, default: float) -> tuple[float, float] | None:
@@ -269,18 +268,21 @@ def _remarks(evidence: Evidence, posterior: PressurePosterior) -> tuple[str, str
 def _what_is_left(evidence: Evidence, reason: str, rng: np.random.Generator) -> dict[str, Any]:
     """Return mass, and gamma_e where luminosity and mass are given, of a star off the grid."""
     row: dict[str, Any] = {"status": "off_grid", "flags": "", "message": reason}
-    light = evidence.light
+    size = 4000
+    light, mass = evidence.light, None
+    if evidence.mass is not None:
+        mass = np.abs(evidence.mass[0] + evidence.mass[1] * rng.standard_normal(size))
+        row |= edges("mass", mass)
     if light is not None:
-        size = 4000
         centre = light.centres[rng.integers(len(light.centres), size=size)]
         log_l, log_t = (centre + rng.multivariate_normal(np.zeros(2), light.covariance, size)).T
-        row |= edges("luminosity", 10.0**log_l) | edges("temperature", 10.0**log_t)
-        if evidence.mass is not None:
-            mass = evidence.mass[0] + evidence.mass[1] * rng.standard_normal(size)
+        row |= edges("luminosity", 10.0**log_l)
+        if light.covariance[1, 1] < _KNOWN:
+            row |= edges("temperature", 10.0**log_t)
+        if mass is not None:
             feh = 0.0 if evidence.feh is None else evidence.feh[0]
             metals = SOLAR_METALS * 10.0**feh
             matter = composition(float(hydrogen_of_metals(metals)), metals)
-            gamma = eddington_factor(10.0**log_l, np.abs(mass), thomson_opacity(matter))
-            row |= edges("gamma_e", gamma) | edges("mass", mass)
+            row |= edges("gamma_e", eddington_factor(10.0**log_l, mass, thomson_opacity(matter)))
             row["message"] += "; gamma_e from the luminosity and mass given"
     return row
