@@ -1,6 +1,8 @@
 import re
 import shutil
 import subprocess
+import sys
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -102,3 +104,20 @@ def test_tables_that_cannot_serve_are_refused(table):
         proposal_table(table[3:])
     with pytest.raises(InputError, match="nothing to draw"):
         proposal_plot(table[2:])
+
+
+@pytest.mark.long
+def test_the_script_makes_a_proposal_from_the_demo(tmp_path):
+    root = Path(__file__).parent.parent.parent
+    command = [sys.executable, str(root / "scripts" / "hot_star_proposal.py"), str(tmp_path)]
+    done = subprocess.run(command, capture_output=True, text=True, check=False)
+    assert done.returncode == 0, done.stderr
+    assert "Cinder 6: off_grid" in done.stdout
+    text = (tmp_path / "pressure_deluxe.tex").read_text(encoding="utf-8")
+    # The invented truth: 55, 40, 38, 30 and 25 solar masses (catalogs-demo, the truth's table).
+    masses = [
+        float(re.search(r"\$([\d.]+)\^", line.split(" & ")[3]).group(1))
+        for line in text.splitlines()
+        if line.startswith("Cinder")
+    ]
+    assert masses[:5] == pytest.approx([55.0, 40.0, 38.0, 30.0, 25.0], rel=0.15)

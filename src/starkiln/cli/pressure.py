@@ -18,9 +18,10 @@ carries the same share of the pressure everywhere.
 By TABLE: targets with two of the columns temperature (K), luminosity (solLum) and radius
 (solRad), or luminosity or mass (solMass) alone; where known also logg, mass (dynamical), feh,
 name, and the error of each under e_. Where radius and temperature are given, luminosity
-follows from them, with its covariance. By --run: the stars of a run with their posterior draws of temperature and
-luminosity; --targets adds logg, mass or feh by name. Mass, age and ratios are then drawn
-jointly from main-sequence models; _lo and _hi are the 16th and 84th percentiles.
+follows from them, with its covariance. By --run: the stars of a run with their posterior
+draws of temperature and luminosity; --targets adds logg, mass or feh by name. Mass, age and
+ratios are then drawn jointly from main-sequence models; _lo and _hi are the 16th and 84th
+percentiles.
 
 radiation_fraction is P_rad over the total pressure, radiation_to_gas P_rad over the gas
 pressure, each the ratio of the integrals over the star's volume; _core is the same at the
