@@ -133,6 +133,8 @@ def test_stars_with_no_model_are_told_why():
     assert "giant" in reason(4500.0, 300.0)
     assert "stripped" in reason(60000.0, 1e4)
     assert "brighter" in reason(50000.0, 1e7)
+    # A cool hypergiant, which swollen models of the heaviest stars would match.
+    assert "supergiant" in reason(5000.0, 1.5e6)
     assert "contradict" in reason(25000.0, 9000.0, mass=(30.0, 0.5))
     assert "1.6 to 120" in posterior(Evidence(mass=(0.8, 0.02))).reason
     assert reason(25000.0, 9000.0) == ""

@@ -7,7 +7,7 @@ prior and likelihood, points are drawn inside the heavy cells, and weighed again
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field, fields, replace
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
@@ -22,6 +22,7 @@ from starkiln.derived._pressure_cells import (
     near,
     off_grid,
     scatter,
+    take,
 )
 from starkiln.errors import InputError
 from starkiln.interiors import MainSequence, load_grid
@@ -202,11 +203,6 @@ def pressure_posterior(
 def _share(log_weight: np.ndarray) -> np.ndarray:
     weight = np.exp(log_weight - log_weight.max())
     return np.asarray(weight / weight.sum())
-
-
-def take(models: MainSequence, rows: np.ndarray) -> MainSequence:
-    """Return some of the models."""
-    return MainSequence(*(getattr(models, item.name)[rows] for item in fields(models)))
 
 
 def _resample(weight: np.ndarray, size: int, rng: np.random.Generator) -> np.ndarray:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 from functools import lru_cache
 
 import numpy as np
@@ -132,19 +132,28 @@ def cells() -> Cells:
     ]
     middles = np.stack([a.ravel() for a in np.meshgrid(*axes, indexing="ij")], axis=-1)
     models = grid.at(*middles.T)
-    return Cells(middles, size, models, log_prior(middles, models))
+    prior = log_prior(middles, models)
+    kept = np.isfinite(prior)
+    return Cells(middles[kept], size, take(models, kept), prior[kept])
+
+
+def take(models: MainSequence, rows: np.ndarray) -> MainSequence:
+    """Return some of the models."""
+    return MainSequence(*(getattr(models, item.name)[rows] for item in fields(models)))
 
 
 def log_prior(point: np.ndarray, models: MainSequence) -> np.ndarray:
     """Return the log density in (ln M, u) of the mass function and of even star formation.
 
     Stars born evenly in time are found alive in proportion to M^slope dM dt, so that
-    short-lived masses are rarer by their lifetime.
+    short-lived masses are rarer by their lifetime. Models whose envelopes swell at the limit
+    of light, cooler than 1e4 K above 30 solar masses, have no meaning and no weight.
     """
     ageing = load_grid().ageing(*point.T)
     with np.errstate(divide="ignore"):
         log_time = np.log(models.lifetime_myr * ageing)
-    return np.asarray((IMF_SLOPE + 1.0) * point[:, 0] + log_time)
+    swollen = (models.log_temperature < 4.0) & (point[:, 0] > np.log(30.0))
+    return np.where(swollen, -np.inf, (IMF_SLOPE + 1.0) * point[:, 0] + log_time)
 
 
 def log_likelihood(
