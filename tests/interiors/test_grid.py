@@ -103,6 +103,9 @@ def test_pressure_ratio_of_an_array_of_masses():
     assert ratios.radiation_to_gas == pytest.approx(
         ratios.radiation_fraction / (1 - ratios.radiation_fraction)
     )
+    assert ratios.radiation_to_gas_core == pytest.approx(
+        ratios.radiation_fraction_core / (1 - ratios.radiation_fraction_core)
+    )
     old = pressure_ratio(mass, age_fraction=0.9)
     assert np.all(old.radiation_fraction > ratios.radiation_fraction)
     assert np.all(old.luminosity > ratios.luminosity)
