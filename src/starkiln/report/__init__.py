@@ -67,5 +67,6 @@ __all__ = [
     "view_of",
     "write_figures",
     "write_page",
+    "write_proposal",
     "write_tables",
 ]
