@@ -29,8 +29,8 @@ METALS = np.geomspace(1e-3, 0.03, 7)
 STAGES = 29
 SHIFT, LAST = 0.03, 0.0075
 MOST_MISSING = 10
-#: Of the zero-age models, those kept as first guesses for new ones.
-KEPT_MASSES, KEPT_METALS = slice(0, None, 3), slice(0, None, 3)
+#: Of the zero-age models, the masses and points kept as first guesses for new ones.
+KEPT_MASSES, KEPT_POINTS = slice(0, None, 2), np.linspace(0, POINTS - 1, 101)
 
 
 def stages() -> np.ndarray:
@@ -87,6 +87,12 @@ def build() -> tuple[np.ndarray, np.ndarray]:
     return table, first
 
 
+def thinned(unknowns: np.ndarray) -> np.ndarray:
+    """Return the unknowns at `KEPT_POINTS`."""
+    every = np.arange(POINTS)
+    return np.apply_along_axis(lambda row: np.interp(KEPT_POINTS, every, row), -1, unknowns)
+
+
 def main(path: str) -> None:
     """Build the grid and write it with its provenance."""
     table, first = build()
@@ -109,9 +115,8 @@ def main(path: str) -> None:
         "mass": MASSES,
         "stage": stages(),
         "table": table.astype(np.float32),
-        "start_metals": METALS[KEPT_METALS],
         "start_mass": MASSES[KEPT_MASSES],
-        "start": first[KEPT_METALS, KEPT_MASSES].astype(np.float32),
+        "start": thinned(first[:, KEPT_MASSES]).astype(np.float32),
     }
     atomic_write(Path(path), lambda stream: np.savez_compressed(stream, **content))
     print(

@@ -79,6 +79,8 @@ def test_table_of_targets(capsys, tmp_path):
         ([], "give one of --mass, TABLE and --run, not none"),
         (["t.csv", "--mass", "4"], "not TABLE and --mass"),
         (["t.csv", "--hydrogen", "0.7"], "--hydrogen goes with --mass only"),
+        (["t.csv", "--at", "1"], "--at 1 is out of bounds"),
+        (["--mass", "4", "--at", "0.5"], "--at goes with TABLE or --run only"),
         (["t.csv", "--targets", "u.csv"], "--targets goes with --run only"),
         (["--run", "nowhere"], "nowhere is no folder"),
     ],

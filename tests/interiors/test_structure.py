@@ -77,6 +77,10 @@ def test_surface_and_light(ten):
     assert shine.to_value(u.L_sun) == pytest.approx(ten.luminosity.value, rel=1e-5)
     light = A_RAD.value * ten.shell_temperature.value**4 / 3.0
     assert ten.radiation_pressure.value == pytest.approx(light, rel=1e-12)
+    # Grey photosphere at tau = 2/3: P = (2/3) g/kappa above a T^4/6 (Eddington's approximation).
+    gravity = (constants.G * ten.mass / ten.radius**2).to_value("m s-2")
+    top = 2.0 / 3.0 * gravity / ten.opacity.value[-1] + 0.5 * light[-1]
+    assert ten.pressure.value[-1] == pytest.approx(top, rel=1e-4)
     assert ten.radiation_fraction_at(0.0) == ten.radiation_fraction_core
     assert ten.convective[0]
     assert not ten.convective[150]

@@ -3,26 +3,25 @@
 from __future__ import annotations
 
 import argparse
-import sys
 from pathlib import Path
 from typing import Any
 
 from starkiln.cli._options import quantity
+from starkiln.cli._tables import add_format, print_table
 from starkiln.errors import InputError
-
-_FORMATS = {"ecsv": "ascii.ecsv", "votable": "votable", "csv": "ascii.csv"}
 
 _NOTES = """\
 By --mass: homogeneous stars. --model structure (default) solves all four equations of
 structure, 1.6 to 120 solMass; --model standard is Eddington's, of any mass, in which light
 carries the same share of the pressure everywhere.
 
-By TABLE: targets with the columns temperature (K) and luminosity (solLum) or radius (solRad),
-or mass (solMass) alone; where known also logg, mass (dynamical), feh, name, and the error of
-each under e_. Where radius and temperature are given, luminosity follows from them, with its
-covariance. By --run: the stars of a run with their posterior draws of temperature and
-luminosity; --targets adds logg, mass or feh by name. Mass, age and ratios are then drawn
-jointly from main-sequence models; _lo and _hi are the 16th and 84th percentiles.
+By TABLE: targets with two of the columns temperature (K), luminosity (solLum) and radius
+(solRad), or luminosity or mass (solMass) alone; where known also logg, mass (dynamical), feh,
+name, and the error of each under e_. Where radius and temperature are given, luminosity
+follows from them, with its covariance. By --run: the stars of a run with their posterior
+draws of temperature and luminosity; --targets adds logg, mass or feh by name. Mass, age and
+ratios are then drawn jointly from main-sequence models; _lo and _hi are the 16th and 84th
+percentiles.
 
 radiation_fraction is P_rad over the total pressure, radiation_to_gas P_rad over the gas
 pressure, each the ratio of the integrals over the star's volume; _core is the same at the
@@ -47,10 +46,11 @@ def configure(parser: argparse.ArgumentParser) -> None:
     parser.add_argument(
         "--model", choices=["structure", "standard"], help="with --mass (default structure)"
     )
-    parser.add_argument("--seed", type=int, default=0, metavar="N", help="default 0")
     parser.add_argument(
-        "--format", choices=[*_FORMATS, "fits", "text"], default="text", help="default text"
+        "--at", type=float, metavar="Q", help="ratios at this m/M too (0 to 0.99; TABLE, --run)"
     )
+    parser.add_argument("--seed", type=int, default=0, metavar="N", help="default 0")
+    add_format(parser)
 
 
 def run(args: argparse.Namespace) -> int:
@@ -68,7 +68,7 @@ def run(args: argparse.Namespace) -> int:
         table = _by_table(args)
     else:
         table = _by_run(args)
-    _print_table(table, args.format)
+    print_table(table, args.format)
     return 3 if "status" in table.colnames and any(table["status"] != "ok") else 0
 
 
@@ -81,6 +81,10 @@ def _check_companions(args: argparse.Namespace, source: str) -> None:
                 f"--{wrong[0]} goes with --mass only; the composition of {source} follows from "
                 f"its column feh"
             )
+    if args.at is not None and source == "--mass":
+        raise InputError("--at goes with TABLE or --run only")
+    if args.at is not None and not 0.0 <= args.at <= 0.99:
+        raise InputError(f"--at {args.at:g} is out of bounds: give a mass fraction of 0 to 0.99")
     if args.targets is not None and source != "--run":
         raise InputError("--targets goes with --run only")
 
@@ -102,7 +106,7 @@ def _by_mass(args: argparse.Namespace) -> Any:
 def _by_table(args: argparse.Namespace) -> Any:
     from starkiln.derived import pressure_table
 
-    return pressure_table(_columns(args.table), seed=args.seed)
+    return pressure_table(_columns(args.table), seed=args.seed, at=args.at)
 
 
 def _by_run(args: argparse.Namespace) -> Any:
@@ -113,7 +117,7 @@ def _by_run(args: argparse.Namespace) -> Any:
     names = [str(name) for name in done.results["name"]]
     draws = [done.draws(row) for row in range(1, len(names) + 1)]
     known = None if args.targets is None else _columns(args.targets)
-    return pressure_table_of_draws(names, draws, known, seed=args.seed)
+    return pressure_table_of_draws(names, draws, known, seed=args.seed, at=args.at)
 
 
 def _columns(path: str) -> dict[str, list[Any]]:
@@ -127,16 +131,3 @@ def _columns(path: str) -> dict[str, list[Any]]:
     if not set(columns) & set(PRESSURE_INPUTS):
         raise InputError(f"{path}: no column of {', '.join(PRESSURE_INPUTS)}")
     return columns
-
-
-def _print_table(table: Any, form: str) -> None:
-    if form == "text":
-        for name in table.colnames[1:]:
-            if table[name].dtype.kind == "f":
-                table[name].format = ".5g"
-        lines = table.pformat(max_lines=-1, max_width=-1, show_unit=True)
-        sys.stdout.write("\n".join(lines) + "\n")
-    elif form == "fits":
-        table.write(sys.stdout.buffer, format="fits")
-    else:
-        table.write(sys.stdout, format=_FORMATS[form])

@@ -14,6 +14,7 @@ from starkiln.derived._pressure import (
     pressure_posterior,
 )
 from starkiln.derived._pressure_cells import Evidence, Light
+from starkiln.derived._pressure_cells import assumptions as pressure_assumptions
 from starkiln.derived._pressure_columns import ratio_table
 from starkiln.derived._pressure_table import INPUTS as PRESSURE_INPUTS
 from starkiln.derived._pressure_table import pressure_table, pressure_table_of_draws
@@ -41,6 +42,7 @@ __all__ = [
     "luminosity",
     "luminosity_row",
     "luminosity_table",
+    "pressure_assumptions",
     "pressure_posterior",
     "pressure_table",
     "pressure_table_of_draws",

@@ -7,7 +7,7 @@ prior and likelihood, points are drawn inside the heavy cells, and weighed again
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field, fields
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
@@ -22,6 +22,7 @@ from starkiln.derived._pressure_cells import (
     near,
     off_grid,
     scatter,
+    take,
 )
 from starkiln.errors import InputError
 from starkiln.interiors import MainSequence, load_grid
@@ -38,6 +39,8 @@ SCATTER_SHARE = 0.02
 _PROPOSALS = (1500, 12000)
 _ENOUGH = 400.0
 _MOST_CENTRES = 256
+#: log10 T and an error that leaves it free.
+_ANY_TEMPERATURE = (4.4, 1.0)
 
 
 @dataclass(frozen=True)
@@ -61,9 +64,25 @@ class PressurePosterior:
     n_eff: float = 0.0
     reason: str = ""
 
+    def radiation_fraction_at(self, mass_fraction: float) -> np.ndarray:
+        """Return draws of P_rad/P at m/M from 0 to 0.99, between the depths of the grid."""
+        depths = (0.0, *load_grid().depths)
+        if not 0.0 <= mass_fraction <= depths[-1]:
+            raise InputError(
+                f"mass fraction = {mass_fraction:g} is out of bounds: give 0 to {depths[-1]:g}"
+            )
+        names = ["_core", *(f"_at_{depth:g}" for depth in depths[1:])]
+        shares = np.stack([self.draws[f"radiation_fraction{name}"] for name in names])
+        # Near the centre the run goes as m^(2/3).
+        places = np.array(depths) ** (2.0 / 3.0)
+        place = mass_fraction ** (2.0 / 3.0)
+        above = min(int(np.searchsorted(places, place, side="right")), places.size - 1)
+        share = (place - places[above - 1]) / (places[above] - places[above - 1])
+        return np.asarray(shares[above - 1] + share * (shares[above] - shares[above - 1]))
+
 
 def light_from_values(
-    temperature: tuple[float, float],
+    temperature: tuple[float, float] | None = None,
     luminosity: tuple[float, float] | None = None,
     radius: tuple[float, float] | None = None,
 ) -> Light:
@@ -71,25 +90,40 @@ def light_from_values(
 
     Parameters
     ----------
-    temperature : tuple of float
+    temperature : tuple of float, optional
         K.
     luminosity : tuple of float, optional
-        solLum, independent of the temperature.
+        solLum, independent of the others; without a temperature it holds the star alone, or
+        gives one together with the radius.
     radius : tuple of float, optional
-        solRad; the luminosity then follows from it and the temperature, and errs with
+        solRad; with a temperature the luminosity follows from the two, and errs with
         the temperature.
+
+    Raises
+    ------
+    InputError
+        Fewer than a luminosity, or two of the three.
     """
-    log_t, e_t = _log10(temperature)
-    if radius is not None:
-        log_r, e_r = _log10(radius)
-        log_l = 2.0 * log_r + 4.0 * (log_t - np.log10(T_SUN.value))
-        covariance = np.array([[4.0 * e_r**2 + 16.0 * e_t**2, 4.0 * e_t**2], [0.0, e_t**2]])
-        covariance[1, 0] = covariance[0, 1]
-    elif luminosity is not None:
-        log_l, e_l = _log10(luminosity)
-        covariance = np.diag([e_l**2, e_t**2])
-    else:
+    zero = 4.0 * np.log10(T_SUN.value)
+    if temperature is not None and radius is not None:
+        (log_t, e_t), (log_r, e_r) = _log10(temperature), _log10(radius)
+        log_l, shared = 2.0 * log_r + 4.0 * log_t - zero, 4.0 * e_t**2
+        errors = 4.0 * e_r**2 + 16.0 * e_t**2, e_t**2
+    elif luminosity is None:
         raise InputError("a luminosity or a radius must go with the temperature")
+    else:
+        log_l, e_l = _log10(luminosity)
+        shared = 0.0
+        if temperature is not None:
+            log_t, e_t = _log10(temperature)
+        elif radius is not None:
+            log_r, e_r = _log10(radius)
+            log_t, e_t = 0.25 * (log_l + zero) - 0.5 * log_r, float(np.hypot(e_l, 2 * e_r) / 4)
+            shared = e_l**2 / 4.0
+        else:
+            log_t, e_t = _ANY_TEMPERATURE
+        errors = e_l**2, e_t**2
+    covariance = np.array([[errors[0], shared], [shared, errors[1]]])
     return Light(np.array([[log_l, log_t]]), covariance)
 
 
@@ -143,10 +177,12 @@ def pressure_posterior(
     reason = off_grid(evidence, tiles)
     if reason:
         return PressurePosterior(reason=reason)
-    some = near(evidence, tiles)
+    # Cells are weighed with a simpler likelihood; the points drawn in them with the exact one.
+    rough = evidence if evidence.light is None else replace(evidence, light=evidence.light.coarse)
+    some = near(rough, tiles)
     point, models = tiles.coordinates[some], take(tiles.models, some)
-    likelihood = log_likelihood(evidence, point, models, wide=True)
-    reason = conflict(evidence, point, models, likelihood)
+    likelihood = log_likelihood(rough, point, models, wide=True)
+    reason = conflict(rough, point, models, likelihood)
     if reason:
         return PressurePosterior(reason=reason)
     weight = tiles.log_prior[some] + likelihood
@@ -167,11 +203,6 @@ def pressure_posterior(
 def _share(log_weight: np.ndarray) -> np.ndarray:
     weight = np.exp(log_weight - log_weight.max())
     return np.asarray(weight / weight.sum())
-
-
-def take(models: MainSequence, rows: np.ndarray) -> MainSequence:
-    """Return some of the models."""
-    return MainSequence(*(getattr(models, item.name)[rows] for item in fields(models)))
 
 
 def _resample(weight: np.ndarray, size: int, rng: np.random.Generator) -> np.ndarray:

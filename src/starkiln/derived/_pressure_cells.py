@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 from functools import lru_cache
 
 import numpy as np
@@ -28,6 +28,22 @@ _CELL_VARIANCE = np.array([0.02, 0.01, 0.02, 0.012, 0.06]) ** 2
 #: Mahalanobis distance squared of three sigma in two dimensions.
 _FAR = 11.83
 _KEEP = 40.0
+_WIDER = 1.3
+
+
+def assumptions() -> dict[str, float]:
+    """Return the numbers that were chosen, for the text that goes with the answers."""
+    low, high = np.exp(load_grid().log_mass)
+    return {
+        "imf_slope": IMF_SLOPE,
+        "solar_metals": SOLAR_METALS,
+        "feh": USUAL_FEH[0],
+        "e_feh": USUAL_FEH[1],
+        "scatter_luminosity": SCATTER_LUMINOSITY,
+        "scatter_temperature": SCATTER_TEMPERATURE,
+        "mass_low": float(low),
+        "mass_high": float(high),
+    }
 
 
 @dataclass(frozen=True)
@@ -55,6 +71,13 @@ class Light:
         """Covariance of all."""
         spread = self.centres - self.mean
         return np.asarray(self.covariance + spread.T @ spread / len(spread))
+
+    @property
+    def coarse(self) -> Light:
+        """One Gaussian in place of many, a little wider: where to look, not what to believe."""
+        if len(self.centres) == 1:
+            return self
+        return Light(self.mean[None], _WIDER * self.total_covariance)
 
 
 @dataclass(frozen=True)
@@ -109,19 +132,28 @@ def cells() -> Cells:
     ]
     middles = np.stack([a.ravel() for a in np.meshgrid(*axes, indexing="ij")], axis=-1)
     models = grid.at(*middles.T)
-    return Cells(middles, size, models, log_prior(middles, models))
+    prior = log_prior(middles, models)
+    kept = np.isfinite(prior)
+    return Cells(middles[kept], size, take(models, kept), prior[kept])
+
+
+def take(models: MainSequence, rows: np.ndarray) -> MainSequence:
+    """Return some of the models."""
+    return MainSequence(*(getattr(models, item.name)[rows] for item in fields(models)))
 
 
 def log_prior(point: np.ndarray, models: MainSequence) -> np.ndarray:
     """Return the log density in (ln M, u) of the mass function and of even star formation.
 
     Stars born evenly in time are found alive in proportion to M^slope dM dt, so that
-    short-lived masses are rarer by their lifetime.
+    short-lived masses are rarer by their lifetime. Models whose envelopes swell at the limit
+    of light, cooler than 1e4 K above 30 solar masses, have no meaning and no weight.
     """
     ageing = load_grid().ageing(*point.T)
     with np.errstate(divide="ignore"):
         log_time = np.log(models.lifetime_myr * ageing)
-    return np.asarray((IMF_SLOPE + 1.0) * point[:, 0] + log_time)
+    swollen = (models.log_temperature < 4.0) & (point[:, 0] > np.log(30.0))
+    return np.where(swollen, -np.inf, (IMF_SLOPE + 1.0) * point[:, 0] + log_time)
 
 
 def log_likelihood(

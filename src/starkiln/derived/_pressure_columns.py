@@ -18,6 +18,8 @@ COLUMNS = {
     "radiation_to_gas": ("", "P_rad/P_gas, ratio of the volume integrals"),
     "radiation_fraction_core": ("", "P_rad/P at the centre"),
     "radiation_to_gas_core": ("", "P_rad/P_gas at the centre"),
+    "radiation_fraction_at": ("", "P_rad/P at the mass fraction asked for"),
+    "radiation_to_gas_at": ("", "P_rad/P_gas at the mass fraction asked for"),
     "gamma_e": ("", "Eddington factor of electron scattering at the surface"),
     "radius": ("solRad", "Radius"),
     "luminosity": ("solLum", "Luminosity"),
@@ -59,6 +61,8 @@ def assemble(rows: Sequence[Mapping[str, Any]]) -> Any:
     table["name"] = [row["name"] for row in rows]
     table["name"].description = "Name"
     for name, (unit, text) in COLUMNS.items():
+        if name.endswith("_at") and not any(name in row for row in rows):
+            continue
         for edge, words in _EDGES.items():
             values = np.array([row.get(name + edge, np.nan) for row in rows], dtype=float)
             column = MaskedColumn(values, mask=np.isnan(values), unit=unit or None)

@@ -34,9 +34,13 @@ INPUTS = {
 _EXACT = 1e-3
 #: Fewer effective points than this are not trusted.
 _FEW = 50.0
+#: Variance of log10 T beyond which a temperature was not given.
+_KNOWN = 0.25
 
 
-def pressure_table(columns: Mapping[str, Sequence[Any]], *, seed: int = 0) -> Any:
+def pressure_table(
+    columns: Mapping[str, Sequence[Any]], *, seed: int = 0, at: float | None = None
+) -> Any:
     """Return the pressure ratios of a table of targets.
 
     Parameters
@@ -46,12 +50,15 @@ def pressure_table(columns: Mapping[str, Sequence[Any]], *, seed: int = 0) -> An
         for missing. Where radius and temperature are given, luminosity follows from them.
     seed : int
         A row's draws depend on it and on the row's own values alone.
+    at : float, optional
+        Mass fraction, 0 to 0.99, at which the ratios are given too.
 
     Returns
     -------
     astropy.table.Table
-        One row per target: `COLUMNS` with `_lo` and `_hi`, `status` (`ok`, `off_grid`,
-        `rejected`), `flags` and `message`.
+        One row per target: `COLUMNS` with `_lo` and `_hi`, `radiation_fraction_at` and
+        `radiation_to_gas_at` where asked for, `status` (`ok`, `off_grid`, `rejected`),
+        `flags` and `message`.
     """
     count = len(next(iter(columns.values())))
     rows = []
@@ -59,24 +66,33 @@ def pressure_table(columns: Mapping[str, Sequence[Any]], *, seed: int = 0) -> An
         given = {key: float(columns[key][i]) for key in columns if key != "name"}
         given = {key: value for key, value in given.items() if not np.isnan(value)}
         name = str(columns["name"][i]) if "name" in columns else f"row {i + 1}"
-        rows.append({"name": name} | _row(given, name, seed))
+        rows.append({"name": name} | _row(given, name, seed, at))
     return assemble(rows)
 
 
-def pressure_row(evidence: Evidence, rng: np.random.Generator) -> dict[str, Any]:
+def pressure_row(
+    evidence: Evidence, rng: np.random.Generator, at: float | None = None
+) -> dict[str, Any]:
     """Return one row of the table: medians, intervals, status, flags and message.
 
     Parameters
     ----------
     evidence : Evidence
     rng : numpy.random.Generator
+    at : float, optional
+        Mass fraction at which the ratios are given too.
     """
     posterior = pressure_posterior(evidence, rng=rng)
     if posterior.reason:
         return _what_is_left(evidence, posterior.reason, rng)
     row: dict[str, Any] = {}
     for name in COLUMNS:
-        row |= edges(name, posterior.draws[name])
+        if name in posterior.draws:
+            row |= edges(name, posterior.draws[name])
+    if at is not None:
+        share = posterior.radiation_fraction_at(at)
+        row |= edges("radiation_fraction_at", share)
+        row |= edges("radiation_to_gas_at", share / (1.0 - share))
     flags, message = _remarks(evidence, posterior)
     return row | {"status": "ok", "flags": flags, "message": message}
 
@@ -87,6 +103,7 @@ def pressure_table_of_draws(
     known: Mapping[str, Sequence[Any]] | None = None,
     *,
     seed: int = 0,
+    at: float | None = None,
 ) -> Any:
     """Return the pressure ratios of fitted stars, from their posterior draws.
 
@@ -100,6 +117,8 @@ def pressure_table_of_draws(
         Columns `name` and any of `mass`, `logg`, `feh`, with errors: what else is known of
         stars, by name.
     seed : int
+    at : float, optional
+        As for `pressure_table`.
 
     Returns
     -------
@@ -115,7 +134,7 @@ def pressure_table_of_draws(
     rows = []
     for name, one in zip(names, draws, strict=True):
         given = more.get(name, {})
-        rows.append({"name": name} | _row_of_draws(one, given, name, seed))
+        rows.append({"name": name} | _row_of_draws(one, given, name, seed, at))
     return assemble(rows)
 
 
@@ -138,7 +157,11 @@ def _by_name(
 
 
 def _row_of_draws(
-    draws: Mapping[str, Any] | None, given: dict[str, float], name: str, seed: int
+    draws: Mapping[str, Any] | None,
+    given: dict[str, float],
+    name: str,
+    seed: int,
+    at: float | None,
 ) -> dict[str, Any]:
     columns = [] if draws is None else list(draws.keys())
     if draws is None or "temperature" not in columns or "luminosity" not in columns:
@@ -155,7 +178,7 @@ def _row_of_draws(
         )
         light = light_from_draws(luminosity, temperature)
         stamp = given | {"first": float(luminosity[0]), "last": float(temperature[-1])}
-        return pressure_row(_evidence(light, given), star_generator(seed, name, stamp))
+        return pressure_row(_evidence(light, given), star_generator(seed, name, stamp), at)
     except InputError as error:
         return {"status": "rejected", "flags": "", "message": str(error)}
 
@@ -167,11 +190,11 @@ def star_generator(seed: int, name: str, values: Mapping[str, Any]) -> np.random
     return np.random.default_rng([seed, *np.frombuffer(digest, dtype=np.uint32)])
 
 
-def _row(given: dict[str, float], name: str, seed: int) -> dict[str, Any]:
+def _row(given: dict[str, float], name: str, seed: int, at: float | None) -> dict[str, Any]:
     try:
         _check(given)
         light = _light(given)
-        return pressure_row(_evidence(light, given), star_generator(seed, name, given))
+        return pressure_row(_evidence(light, given), star_generator(seed, name, given), at)
     except InputError as error:
         return {"status": "rejected", "flags": "", "message": str(error)}
 
@@ -203,17 +226,14 @@ def _check(given: dict[str, float]) -> None:
 
 
 def _light(given: dict[str, float]) -> Light | None:
-    temperature = _pair(given, "temperature", 0.0)
-    radius, luminosity = _pair(given, "radius", 0.0), _pair(given, "luminosity", 0.0)
-    if temperature is None:
-        if "mass" in given:
-            return None
-        raise InputError("temperature is missing: give it with luminosity or radius, or a mass")
-    if radius is None and luminosity is None:
-        if "mass" in given:
-            return None
-        raise InputError("luminosity and radius are missing: give one of them, or a mass")
-    return light_from_values(temperature, luminosity, radius)
+    names = ("temperature", "luminosity", "radius")
+    if "luminosity" in given or {"temperature", "radius"} <= set(given):
+        return light_from_values(*(_pair(given, name, 0.0) for name in names))
+    if "mass" in given:
+        return None
+    raise InputError(
+        "too little to go by: give luminosity, or temperature with radius or luminosity, or a mass"
+    )
 
 
 def _pair(given: dict[str, float], name: str, default: float) -> tuple[float, float] | None:
@@ -235,6 +255,10 @@ def _remarks(evidence: Evidence, posterior: PressurePosterior) -> tuple[str, str
             "an unresolved companion would make luminosity and mass too high",
         ),
         "at_edge": (edge, f"the mass runs into the bounds {low:.1f} to {high:.0f} solMass"),
+        "near_the_end": (
+            float(np.median(posterior.draws["age_fraction"])) > 0.95,
+            "the star may have left the main sequence, where these models end",
+        ),
         "few_points": (posterior.n_eff < _FEW, "the data pull apart; the draws are rough"),
     }
     kept = {name: text for name, (true, text) in remarks.items() if true}
@@ -244,18 +268,21 @@ def _remarks(evidence: Evidence, posterior: PressurePosterior) -> tuple[str, str
 def _what_is_left(evidence: Evidence, reason: str, rng: np.random.Generator) -> dict[str, Any]:
     """Return mass, and gamma_e where luminosity and mass are given, of a star off the grid."""
     row: dict[str, Any] = {"status": "off_grid", "flags": "", "message": reason}
-    light = evidence.light
+    size = 4000
+    light, mass = evidence.light, None
+    if evidence.mass is not None:
+        mass = np.abs(evidence.mass[0] + evidence.mass[1] * rng.standard_normal(size))
+        row |= edges("mass", mass)
     if light is not None:
-        size = 4000
         centre = light.centres[rng.integers(len(light.centres), size=size)]
         log_l, log_t = (centre + rng.multivariate_normal(np.zeros(2), light.covariance, size)).T
-        row |= edges("luminosity", 10.0**log_l) | edges("temperature", 10.0**log_t)
-        if evidence.mass is not None:
-            mass = evidence.mass[0] + evidence.mass[1] * rng.standard_normal(size)
+        row |= edges("luminosity", 10.0**log_l)
+        if light.covariance[1, 1] < _KNOWN:
+            row |= edges("temperature", 10.0**log_t)
+        if mass is not None:
             feh = 0.0 if evidence.feh is None else evidence.feh[0]
             metals = SOLAR_METALS * 10.0**feh
             matter = composition(float(hydrogen_of_metals(metals)), metals)
-            gamma = eddington_factor(10.0**log_l, np.abs(mass), thomson_opacity(matter))
-            row |= edges("gamma_e", gamma) | edges("mass", mass)
+            row |= edges("gamma_e", eddington_factor(10.0**log_l, mass, thomson_opacity(matter)))
             row["message"] += "; gamma_e from the luminosity and mass given"
     return row

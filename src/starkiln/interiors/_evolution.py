@@ -9,7 +9,8 @@ import numpy as np
 from starkiln.constants import R_SUN, YEAR
 from starkiln.errors import ConvergenceError
 from starkiln.interiors._burning import HYDROGEN_ENERGY
-from starkiln.interiors._henyey import Problem, Shells, relax
+from starkiln.interiors._henyey import Shells, relax
+from starkiln.interiors._local import Problem
 from starkiln.interiors._start import Start
 from starkiln.interiors._structure import solve_homogeneous, volume_share
 from starkiln.matter import Composition, composition

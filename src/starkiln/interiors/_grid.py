@@ -133,7 +133,7 @@ def zero_age_starts() -> tuple[np.ndarray, np.ndarray, np.ndarray]:
     """Return masses, metal fractions and unknowns (Z, M, 4, point) of zero-age models."""
     with np.load(data_path("interiors", _FILE)) as content:
         starts = content["start"].astype(float)
-        return content["start_mass"], content["start_metals"], starts
+        return content["start_mass"], content["metals"], starts
 
 
 def _spline(axes: tuple[np.ndarray, ...], values: np.ndarray) -> Any:

@@ -80,8 +80,9 @@ def pressure_ratio(
         Mean particle weight in place of that of X and Z (`standard` only).
     model : {"structure", "standard"}
         `structure`: models of all four equations, 1.6 to 120 solMass: read between the
-        nodes of the shipped grid where X = 0.76 - 3 Z and Z is 0.001 to 0.03 (P_rad/P
-        within 1 per cent of a direct solution, L and R within 2), else solved one by one.
+        nodes of the shipped grid where X = 0.76 - 3 Z and Z is 0.001 to 0.03 (P_rad/P and
+        L within 0.5 per cent of a direct solution, R within 1, or 3 above 40 solMass), else
+        solved one by one.
         `standard`: Eddington's standard model of any mass, whose light carries the same
         share of the pressure everywhere; its `gamma_e` takes the zero-age luminosity of
         Tout et al. 1996 (0.1 to 100 solMass, NaN beyond).

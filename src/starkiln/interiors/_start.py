@@ -10,7 +10,7 @@ import numpy as np
 
 from starkiln.constants import A_RAD, K_B, L_SUN, M_SUN, M_U, R_SUN, SIGMA_SB, G
 from starkiln.interiors import _lane_emden
-from starkiln.interiors._henyey import Problem
+from starkiln.interiors._local import Problem
 from starkiln.interiors._mesh import make_mesh
 from starkiln.interiors._polytropes import Polytrope
 from starkiln.interiors._standard import standard_model

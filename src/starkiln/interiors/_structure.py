@@ -11,7 +11,8 @@ from starkiln._units import as_float
 from starkiln.constants import L_SUN, R_SUN
 from starkiln.errors import ConvergenceError, InputError
 from starkiln.interiors._grid import zero_age_starts
-from starkiln.interiors._henyey import Problem, Shells, relax
+from starkiln.interiors._henyey import Shells, relax
+from starkiln.interiors._local import Problem
 from starkiln.interiors._start import (
     Start,
     from_polytrope,
@@ -133,7 +134,11 @@ def _nearest(mass_sun: float, matter: Composition) -> Start:
     j = int(np.argmin(np.abs(np.log(masses / mass_sun))))
     z = float(metals[i])
     usual = composition(float(hydrogen_of_metals(z)), z)
-    return Start(float(masses[j]), usual, unknowns[i, j])
+    # The file keeps some of the points, even in their number.
+    kept = unknowns[i, j]
+    place = np.linspace(0.0, kept.shape[1] - 1.0, POINTS)
+    every = np.arange(kept.shape[1])
+    return Start(float(masses[j]), usual, np.stack([np.interp(place, every, row) for row in kept]))
 
 
 def checked(mass: Any, hydrogen: float | None, metals: float) -> tuple[float, Composition]:

@@ -18,55 +18,69 @@ from starkiln.matter._electrons import electron_gas
 MAX_TEMPERATURE_K = 5.9e10
 
 
+_UNITS = {
+    "density": "kg m-3",
+    "temperature": "K",
+    "gas_pressure": "Pa",
+    "radiation_pressure": "Pa",
+    "energy": "J kg-1",
+    "entropy": "J K-1 kg-1",
+    "pairs": "m-3",
+    "heat_capacity": "J K-1 kg-1",
+}
+
+
 @dataclass(frozen=True)
 class GasState:
-    """Matter and light at given density and temperature: plain arrays in SI units.
+    """Matter and light at given density and temperature.
+
+    `gas_state` fills it with quantities, `gas_state_si` with plain arrays in the units below.
 
     Attributes
     ----------
-    density, temperature : numpy.ndarray
+    density, temperature : astropy.units.Quantity
         kg m-3 and K.
-    gas_pressure, radiation_pressure : numpy.ndarray
+    gas_pressure, radiation_pressure : astropy.units.Quantity
         Pa: ions with electrons and pairs; light.
-    energy, entropy : numpy.ndarray
+    energy, entropy : astropy.units.Quantity
         J kg-1 and J K-1 kg-1, light included; energy counts from cold electrons at rest.
     eta : numpy.ndarray
         Degeneracy parameter of the electrons.
-    pairs : numpy.ndarray
+    pairs : astropy.units.Quantity
         Positrons per m3.
     chi_rho, chi_t : numpy.ndarray
         d ln P/d ln rho at fixed T and d ln P/d ln T at fixed rho.
-    heat_capacity : numpy.ndarray
+    heat_capacity : astropy.units.Quantity
         At fixed volume, J K-1 kg-1.
     """
 
-    density: np.ndarray
-    temperature: np.ndarray
-    gas_pressure: np.ndarray
-    radiation_pressure: np.ndarray
-    energy: np.ndarray
-    entropy: np.ndarray
+    density: Any
+    temperature: Any
+    gas_pressure: Any
+    radiation_pressure: Any
+    energy: Any
+    entropy: Any
     eta: np.ndarray
-    pairs: np.ndarray
+    pairs: Any
     chi_rho: np.ndarray
     chi_t: np.ndarray
-    heat_capacity: np.ndarray
+    heat_capacity: Any
 
     @property
-    def pressure(self) -> np.ndarray:
+    def pressure(self) -> Any:
         """Total pressure, Pa."""
         return self.gas_pressure + self.radiation_pressure
 
     @property
     def radiation_to_gas(self) -> np.ndarray:
         """P_rad/P_gas."""
-        return self.radiation_pressure / self.gas_pressure
+        return np.asarray(self.radiation_pressure / self.gas_pressure)
 
     @property
     def gamma_3(self) -> np.ndarray:
         """1 + d ln T/d ln rho at fixed entropy."""
         work = self.pressure * self.chi_t / (self.density * self.temperature)
-        return 1.0 + work / self.heat_capacity
+        return np.asarray(1.0 + work / self.heat_capacity)
 
     @property
     def gamma_1(self) -> np.ndarray:
@@ -79,7 +93,7 @@ class GasState:
         return (self.gamma_3 - 1.0) / self.gamma_1
 
     @property
-    def heat_capacity_p(self) -> np.ndarray:
+    def heat_capacity_p(self) -> Any:
         """At fixed pressure, J K-1 kg-1."""
         return self.heat_capacity * self.gamma_1 / self.chi_rho
 
@@ -109,9 +123,12 @@ def gas_state(density: Any, temperature: Any, matter: Composition) -> GasState:
     InputError
         A value out of bounds.
     """
+    from astropy import units as u
+
     rho, t = _checked(density, "kg m-3", "density", temperature)
     state = gas_state_si(rho.ravel(), t.ravel(), 1.0 / matter.mu_ion, 1.0 / matter.mu_electron)
-    return GasState(**{key: value.reshape(rho.shape) for key, value in vars(state).items()})
+    values = {key: value.reshape(rho.shape) for key, value in vars(state).items()}
+    return GasState(**values | {key: u.Quantity(values[key], _UNITS[key]) for key in _UNITS})
 
 
 def gas_state_si(
@@ -151,8 +168,8 @@ def gas_state_si(
     )
 
 
-def gas_density(pressure: Any, temperature: Any, matter: Composition) -> np.ndarray:
-    """Return the density in kg m-3 at given total pressure and temperature.
+def gas_density(pressure: Any, temperature: Any, matter: Composition) -> Any:
+    """Return the density (a quantity, kg m-3) at given total pressure and temperature.
 
     Parameters
     ----------
@@ -167,6 +184,8 @@ def gas_density(pressure: Any, temperature: Any, matter: Composition) -> np.ndar
     ConvergenceError
         Newton's method failed.
     """
+    from astropy import units as u
+
     p, t = _checked(pressure, "Pa", "pressure", temperature)
     shape, p, t = p.shape, p.ravel(), t.ravel()
     gas = p - A_RAD.value * t**4 / 3.0
@@ -183,7 +202,7 @@ def gas_density(pressure: Any, temperature: Any, matter: Composition) -> np.ndar
             raise _too_little(p, t, rho < 1e-30)
         # Where light or pairs dominate, rounding of the pressure bounds what can be had.
         if np.all((np.abs(step) < 1e-13) | (np.abs(miss) < 1e-14 * np.maximum(1.0, p / gas))):
-            return rho.reshape(shape)
+            return u.Quantity(rho.reshape(shape), "kg m-3")
     raise ConvergenceError("the density did not converge in 60 steps", partial=rho.reshape(shape))
 
 

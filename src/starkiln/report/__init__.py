@@ -13,6 +13,8 @@ from starkiln.report._latex import deluxetable, latex_table
 from starkiln.report._light import light_pressure_plot, spectra_plot
 from starkiln.report._open import open_for_report
 from starkiln.report._page import page, write_page
+from starkiln.report._proposal import proposal_deluxetable, proposal_plot, proposal_table
+from starkiln.report._proposal_text import methods_paragraph, proposal_bibtex, write_proposal
 from starkiln.report._provenance import provenance, provenance_text
 from starkiln.report._references import Reference, bibtex, references
 from starkiln.report._samp import send_table
@@ -40,12 +42,17 @@ __all__ = [
     "latex_table",
     "light_pressure_plot",
     "machine_readable",
+    "methods_paragraph",
     "misfit_plot",
     "open_for_report",
     "page",
     "predictive_plot",
     "pressure_plot",
     "prior_figure",
+    "proposal_bibtex",
+    "proposal_deluxetable",
+    "proposal_plot",
+    "proposal_table",
     "provenance",
     "provenance_text",
     "references",
@@ -60,5 +67,6 @@ __all__ = [
     "view_of",
     "write_figures",
     "write_page",
+    "write_proposal",
     "write_tables",
 ]
