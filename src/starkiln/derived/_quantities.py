@@ -100,6 +100,9 @@ def quantities_of(
     for name in problem.names:
         if name in QUANTITIES and name not in draws:
             draws[name] = problem.column(x, name)
+    if problem.star.rv is not None and "rv" not in draws:
+        # Fixed, but this star's own: told beside the others' default.
+        draws["rv"] = np.full(len(x), problem.star.rv)
     return draws
 
 

@@ -40,8 +40,15 @@ def _dust(settings: Settings) -> str:
     law = f"law {settings.dust_law}, R_V {settings.dust_rv:g}"
     if settings.dust == "zero":
         return "A_V = 0"
+    if settings.dust_rv_error:
+        law += f" +- {settings.dust_rv_error:g} (Gaussian, where A_V is free)"
     if settings.dust == "free":
         return f"half-normal, width {settings.dust_width:g} mag, at most 10 mag; {law}"
+    if settings.dust == "gaussian":
+        mean = settings.dust_mean
+        return f"Gaussian, {mean:g} +- {settings.dust_width:g} mag, cut at 0 and 10 mag; {law}"
+    if settings.dust == "uniform":
+        return f"uniform, 0 to {settings.dust_width:g} mag; {law}"
     return f"the row's av +- e_av (Gaussian, cut at 0 and 10 mag), 0 where it gives none; {law}"
 
 

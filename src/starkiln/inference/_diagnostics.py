@@ -20,6 +20,8 @@ PRIOR_SHARE = 0.7
 CORRELATION = 0.9
 #: `at_edge` when the outermost `EDGE_WIDTH` of a range holds more than `EDGE_SHARE`.
 EDGE_WIDTH, EDGE_SHARE = 0.01, 0.02
+#: Priors of A_V that come from no knowledge of the star.
+_FREE = ("free", "gaussian", "uniform")
 #: `few_bands` below this number of usable bands.
 FEW = 3
 
@@ -75,7 +77,7 @@ def find_flags(problem: Problem, samples: Samples, probability: float) -> list[s
         flags.append("prior_dominated")
     if any(_at_edge(problem, samples, name) for name in problem.names):
         flags.append("at_edge")
-    if "av" in problem.names and problem.dust.prior == "free":
+    if "av" in problem.names and problem.dust.prior in _FREE:
         temperature = problem.column(samples.x, "ln_temperature")
         if np.corrcoef(temperature, problem.column(samples.x, "av"))[0, 1] > CORRELATION:
             flags.append("degenerate")
@@ -134,7 +136,7 @@ def _dust_pull(problem: Problem, x: np.ndarray) -> np.ndarray:
 
 
 def _wide(problem: Problem, samples: Samples, name: str) -> bool:
-    if name not in problem.names or (name == "av" and problem.dust.prior != "free"):
+    if name not in problem.names or (name == "av" and problem.dust.prior not in _FREE):
         return False
     prior = problem.parameters[problem.names.index(name)].prior
     return bool(np.std(problem.column(samples.x, name)) > PRIOR_SHARE * prior.sd)

@@ -103,7 +103,7 @@ class Problem:
     @cached_property
     def table(self) -> Any:
         """The tabulated band fluxes of this star's emitter, bands and dust."""
-        return band_fluxes(self.emitter, self.bands.names, self.dust)
+        return band_fluxes(self.emitter, self.bands.names, self.dust, free_rv="rv" in self.names)
 
     @cached_property
     def names(self) -> tuple[str, ...]:
@@ -132,7 +132,8 @@ class Problem:
     def ln_model(self, x: np.ndarray) -> np.ndarray:
         """Return ln of the band fluxes in W m-3 at `x`, shape (n, n_bands)."""
         shape = len(self.emitter.parameters)
-        ln_flux = self.table.ln_flux(x[:, :shape], self.av(x))
+        free = [self.column(x, "rv")] if "rv" in self.names else []
+        ln_flux = self.table.ln_flux(x[:, :shape], self.av(x), *free)
         ln_flux += (_LN_SOLID_ANGLE + 2.0 * self.column(x, "ln_diameter"))[:, None]
         return ln_flux
 
@@ -217,15 +218,18 @@ def build_problem(star: Star, emitter: Any, dust: Any, settings: Settings) -> Pr
     parameters = _emitter_parameters(star, emitter, settings, notes)
     low, high = settings.diameter_range
     parameters.append(Parameter("ln_diameter", Uniform(math.log(low), math.log(high))))
+    dust = dust if star.rv is None else replace(dust, rv=star.rv)
     if av_prior is not None:
         parameters.append(Parameter("av", av_prior))
+        if settings.dust_rv_error:
+            parameters.append(Parameter("rv", _rv_prior(dust, settings.dust_rv_error)))
     if settings.misfit:
         low, high = settings.misfit_range
         parameters.append(Parameter("ln_misfit", Uniform(math.log(low), math.log(high))))
     return Problem(
         star=star,
         emitter=emitter,
-        dust=dust if star.rv is None else replace(dust, rv=star.rv),
+        dust=dust,
         settings=settings,
         bands=_bands(detections, limits, settings),
         parameters=tuple(parameters),
@@ -257,6 +261,10 @@ def _dust_of(star: Star, dust: Any, notes: list[str]) -> tuple[float | None, Pri
         return 0.0, None
     if dust.prior == "free":
         return None, TruncatedNormal(0.0, dust.width, 0.0, AV_MAX)
+    if dust.prior == "gaussian":
+        return None, TruncatedNormal(dust.mean, dust.width, 0.0, AV_MAX)
+    if dust.prior == "uniform":
+        return None, Uniform(0.0, dust.width)
     if star.av is None:
         notes.append("no av given: A_V = 0 assumed")
         return 0.0, None
@@ -275,6 +283,14 @@ def _dust_of(star: Star, dust: Any, notes: list[str]) -> tuple[float | None, Pri
             "correct it or use --dust zero"
         )
     return None, prior
+
+
+def _rv_prior(dust: Any, width: float) -> Prior:
+    if dust.rv_range is None:
+        raise InputError(
+            f"dust law {dust.law} has no R_V; set dust.rv_error = 0 or choose another law"
+        )
+    return TruncatedNormal(dust.rv, width, *dust.rv_range)
 
 
 def _emitter_parameters(

@@ -60,17 +60,29 @@ class Settings:
     dust: str = _setting(
         "column",
         "dust.prior",
-        "column: the row's av +- e_av, 0 where none is given; free: half-normal; zero",
-        choices=("column", "free", "zero"),
+        "column: the row's av +- e_av, 0 where none is given; free: half-normal; zero; "
+        "gaussian: mean +- width for every row, as from a map; uniform: 0 to width",
+        choices=("column", "free", "zero", "gaussian", "uniform"),
     )
     dust_law: str = _setting("G23", "dust.law", "extinction law, by its published name")
     dust_rv: float = _setting(3.1, "dust.rv", "R_V where the row gives none", lower=2.0, upper=6.0)
     dust_width: float = _setting(
         1.0,
         "dust.width",
-        "mag; width of the half-normal prior of free dust",
+        "mag; of the half-normal, the Gaussian or the uniform prior",
         lower=1e-3,
         upper=10.0,
+    )
+    dust_mean: float = _setting(
+        0.0, "dust.mean", "mag; mean of the Gaussian prior", lower=0.0, upper=10.0
+    )
+    dust_rv_error: float = _setting(
+        0.0,
+        "dust.rv_error",
+        "0: R_V is fixed; else free, Gaussian about the row's rv or dust.rv with this width, "
+        "cut at the law's range",
+        lower=0.0,
+        upper=5.0,
     )
     likelihood: str = _setting(
         "log",

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 import numpy as np
@@ -39,8 +39,9 @@ class StarModel:
             With `temperature` (K), `angular_diameter` (mas), `av` (mag) and further
             parameters of the emitter.
         """
-        table = band_fluxes(self.emitter, self.bands, self.dust)
-        ln_flux = table.ln_flux(self._shape(draws), _values(draws, "av"))
+        free = [_values(draws, "rv")] if _has(draws, "rv") else []
+        table = band_fluxes(self.emitter, self.bands, self.dust, free_rv=bool(free))
+        ln_flux = table.ln_flux(self._shape(draws), _values(draws, "av"), *free)
         return np.exp(ln_flux) * self._solid_angle(draws)[:, None] * PER_UM
 
     def spectrum(self, wavelength_m: np.ndarray, draws: Any) -> np.ndarray:
@@ -48,8 +49,14 @@ class StarModel:
         shape = self._shape(draws)
         columns = [np.exp(shape[:, 0]), *shape[:, 1:].T]
         radiance = self.emitter.radiance(wavelength_m, *columns)
-        dimming = -0.4 * _values(draws, "av")[:, None] * self.dust.curve(wavelength_m)
+        dimming = -0.4 * _values(draws, "av")[:, None] * self._curves(wavelength_m, draws)
         return radiance * 10.0**dimming * self._solid_angle(draws)[:, None] * PER_UM
+
+    def _curves(self, wavelength_m: np.ndarray, draws: Any) -> np.ndarray:
+        if not _has(draws, "rv"):
+            return self.dust.curve(wavelength_m)
+        laws = (replace(self.dust, rv=float(rv)) for rv in _values(draws, "rv"))
+        return np.array([law.curve(wavelength_m) for law in laws])
 
     def _shape(self, draws: Any) -> np.ndarray:
         first = np.log(_values(draws, "temperature"))
@@ -57,6 +64,10 @@ class StarModel:
 
     def _solid_angle(self, draws: Any) -> np.ndarray:
         return 0.25 * np.pi * (_values(draws, "angular_diameter") * MAS_RAD.value) ** 2
+
+
+def _has(draws: Any, name: str) -> bool:
+    return name in (draws.colnames if hasattr(draws, "colnames") else draws)
 
 
 def _values(draws: Any, name: str) -> np.ndarray:

@@ -113,7 +113,11 @@ _FLAG_ORDER = (
 def dust_of(settings: Settings) -> Dust:
     """Return the dust that the settings ask for."""
     return Dust(
-        law=settings.dust_law, rv=settings.dust_rv, prior=settings.dust, width=settings.dust_width
+        law=settings.dust_law,
+        rv=settings.dust_rv,
+        prior=settings.dust,
+        width=settings.dust_width,
+        mean=settings.dust_mean,
     )
 
 
