@@ -42,6 +42,16 @@ def test_the_suns_temperature(key):
     assert found[key].temperature_k == pytest.approx(WANTED[key], abs=2.0)
 
 
+def test_metallicity_enters_as_printed():
+    # Worked by hand from the printed equations at [Fe/H] -1: Casagrande et al. 2010, equation 3,
+    # V - Ks 1.6; Mucciarelli et al. 2021, equation 1, BP - RP 0.8.
+    magnitudes = {"Johnson V": 0.0, "2MASS Ks": -1.6, "Gaia BP": 0.8, "Gaia RP": 0.0}
+    found = temperatures_from_colours(magnitudes, kind="dwarf", feh=-1.0)
+    by_name = {e.calibration: e.temperature_k for e in found}
+    assert by_name["Casagrande 2010"] == pytest.approx(5040.0 / 0.878084, abs=0.1)
+    assert by_name["Mucciarelli 2021"] == pytest.approx(5040.0 / 0.888068, abs=0.1)
+
+
 def test_giants_of_soubiran():
     # Soubiran et al. 2024, A&A 682, A145, against Mucciarelli et al. 2021: median +33 K, robust
     # scatter 74 K for giants with BP and RP; here for those of the reference table.
