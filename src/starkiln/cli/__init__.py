@@ -23,6 +23,10 @@ COMMANDS: dict[str, tuple[str, str]] = {
     "figures": ("starkiln.cli.figures", "draw the figures of a run"),
     "report": ("starkiln.cli.report", "write one self-contained page of a run, and its tables"),
     "pressure": ("starkiln.cli.pressure", "radiation against gas pressure inside stars"),
+    "atmosphere": (
+        "starkiln.cli.atmosphere",
+        "structure, spectrum and light pressure of one model atmosphere",
+    ),
     "luminosity": ("starkiln.cli.luminosity", "luminosity from radius and temperature"),
     "photons": ("starkiln.cli.photons", "blackbody radiation and the photon gas at a temperature"),
     "force": ("starkiln.cli.force", "pressure and force of light: sail, grain, eddington, surface"),

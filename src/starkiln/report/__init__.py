@@ -4,6 +4,13 @@ Functions ending in `_figure` draw several panels and return the figure; those
 ending in `_plot` take `ax=` and return the axes. None of them needs a display.
 """
 
+from starkiln.report._atmospheres import (
+    atmosphere_spectrum_plot,
+    atmosphere_structure_figure,
+    colour_temperature_plot,
+    limb_darkening_plot,
+    opacity_plot,
+)
 from starkiln.report._chain import autocorrelation_plot, chain_figure
 from starkiln.report._checks import predictive_plot, prior_figure
 from starkiln.report._comparisons import pressure_plot, temperature_figure
@@ -32,18 +39,23 @@ __all__ = [
     "FitView",
     "Measurement",
     "Reference",
+    "atmosphere_spectrum_plot",
+    "atmosphere_structure_figure",
     "autocorrelation_plot",
     "bibtex",
     "chain_figure",
+    "colour_temperature_plot",
     "corner_figure",
     "deluxetable",
     "hr_plot",
     "image_bytes",
     "latex_table",
     "light_pressure_plot",
+    "limb_darkening_plot",
     "machine_readable",
     "methods_paragraph",
     "misfit_plot",
+    "opacity_plot",
     "open_for_report",
     "page",
     "predictive_plot",
