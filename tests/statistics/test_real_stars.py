@@ -74,10 +74,11 @@ def test_unsaturated_stars_without_dust():
 
 
 def test_free_dust_makes_dust_free_stars_too_hot_and_is_flagged():
-    selected = [row for row in rows() if is_unsaturated(row)][:4]
-    temperature, _, _ = compare(selected, Settings(dust="free"))
+    selected = [row for row in rows() if is_unsaturated(row)][1:4]
+    quick = Settings(dust="free", effective_draws=300, walkers=32)
+    temperature, _, _ = compare(selected, quick)
     assert np.median(temperature) > 1.15
-    result = fit(star_of(selected[0]), settings=Settings(dust="free"))
+    result = fit(star_of(selected[0]), settings=quick)
     assert "degenerate" in result.flags
 
 
