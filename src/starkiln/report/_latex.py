@@ -7,6 +7,7 @@ from typing import Any
 
 import numpy as np
 
+from starkiln.report._latex_layout import Layout, deluxetable_text, tabular_text
 from starkiln.report._quantities import Printed, printed
 from starkiln.report._rounding import round_asymmetric
 from starkiln.report._text import GREEK, plain_line
@@ -92,49 +93,24 @@ def deluxetable(run: Run) -> str:
     Rejected stars are left out and counted in the comments, where the letters of the
     last column are explained too.
     """
-    shown, lines, notes = _content(run, r"\nodata")
-    heads = [r"\colhead{Star}", *(rf"\colhead{{{item.symbol}}}" for item in shown)]
-    units = [r"\colhead{}", *(rf"\colhead{{{_unit(item)}}}" for item in shown)]
-    parts = [
-        rf"\begin{{deluxetable*}}{{l{'c' * len(shown)}l}}",
-        r"\tablecaption{Stars fitted by starkiln\label{tab:starkiln}}",
-        r"\tablehead{",
-        " & ".join([*heads, r"\colhead{Flags}"]) + r" \\",
-        " & ".join([*units, r"\colhead{}"]),
-        "}",
-        r"\startdata",
-        # AASTeX takes no line end after the last row.
-        " \\\\\n".join(" & ".join(cells) for cells in lines),
-        r"\enddata",
-        rf"\tablecomments{{{notes}}}",
-        r"\end{deluxetable*}",
-    ]
-    return "\n".join(parts) + "\n"
+    return deluxetable_text(_layout(run, r"\nodata"))
 
 
 def latex_table(run: Run) -> str:
     """Return the results as a table of plain LaTeX over both columns; it needs no package."""
-    shown, lines, notes = _content(run, "--")
-    heads = ["Star", *(item.symbol for item in shown), "Flags"]
-    units = ["", *(_unit(item) for item in shown), ""]
-    parts = [
-        r"\begin{table*}",
-        r"\caption{Stars fitted by starkiln}\label{tab:starkiln}",
-        r"\footnotesize\setlength{\tabcolsep}{4pt}\renewcommand{\arraystretch}{1.35}",
-        rf"\begin{{tabular}}{{l{'c' * len(shown)}l}}",
-        r"\hline",
-        " & ".join(heads) + r" \\",
-        " & ".join(units) + r" \\",
-        r"\hline",
-        *(" & ".join(cells) + r" \\" for cells in lines),
-        r"\hline",
-        r"\end{tabular}",
-        "",
-        r"\smallskip",
-        notes,
-        r"\end{table*}",
-    ]
-    return "\n".join(parts) + "\n"
+    return tabular_text(_layout(run, "--"))
+
+
+def _layout(run: Run, absent: str) -> Layout:
+    shown, lines, notes = _content(run, absent)
+    return Layout(
+        caption="Stars fitted by starkiln",
+        label="tab:starkiln",
+        heads=["Star", *(item.symbol for item in shown), "Flags"],
+        units=["", *(_unit(item) for item in shown), ""],
+        lines=lines,
+        notes=notes,
+    )
 
 
 def _content(run: Run, absent: str) -> tuple[list[Printed], list[list[str]], str]:

@@ -9,6 +9,7 @@ import numpy as np
 from starkiln.errors import InputError
 from starkiln.interiors import load_grid, pressure_ratio
 from starkiln.report._latex import latex_text, latex_value
+from starkiln.report._latex_layout import Layout, deluxetable_text, tabular_text
 from starkiln.report._style import ACCENT, BAND, INK, MODEL, drawing
 from starkiln.report._ticks import round_ticks
 from starkiln.report._view import numbers, plain_text
@@ -53,48 +54,24 @@ def proposal_deluxetable(table: Any) -> str:
     table : astropy.table.Table
         What `starkiln.derived.pressure_table` or `pressure_table_of_draws` returned.
     """
-    lines, notes = _content(table, r"\nodata")
-    heads = [r"\colhead{Star}", *(rf"\colhead{{{head}}}" for head, _ in _SHOWN.values())]
-    units = [r"\colhead{}", *(rf"\colhead{{{unit}}}" for _, unit in _SHOWN.values())]
-    parts = [
-        rf"\begin{{deluxetable*}}{{l{'c' * len(_SHOWN)}l}}",
-        r"\tablecaption{Radiation and gas pressure of the targets\label{tab:pressure}}",
-        r"\tablehead{",
-        " & ".join([*heads, r"\colhead{Notes}"]) + r" \\",
-        " & ".join([*units, r"\colhead{}"]),
-        "}",
-        r"\startdata",
-        " \\\\\n".join(" & ".join(cells) for cells in lines),
-        r"\enddata",
-        rf"\tablecomments{{{notes}}}",
-        r"\end{deluxetable*}",
-    ]
-    return "\n".join(parts) + "\n"
+    return deluxetable_text(_layout(table, r"\nodata"))
 
 
 def proposal_table(table: Any) -> str:
     """Return the same as a table of plain LaTeX over both columns; it needs no package."""
-    lines, notes = _content(table, "--")
-    heads = ["Star", *(head for head, _ in _SHOWN.values()), "Notes"]
-    units = ["", *(unit for _, unit in _SHOWN.values()), ""]
-    parts = [
-        r"\begin{table*}",
-        r"\caption{Radiation and gas pressure of the targets}\label{tab:pressure}",
-        r"\footnotesize\setlength{\tabcolsep}{4pt}\renewcommand{\arraystretch}{1.35}",
-        rf"\begin{{tabular}}{{l{'c' * len(_SHOWN)}l}}",
-        r"\hline",
-        " & ".join(heads) + r" \\",
-        " & ".join(units) + r" \\",
-        r"\hline",
-        *(" & ".join(cells) + r" \\" for cells in lines),
-        r"\hline",
-        r"\end{tabular}",
-        "",
-        r"\smallskip",
-        notes,
-        r"\end{table*}",
-    ]
-    return "\n".join(parts) + "\n"
+    return tabular_text(_layout(table, "--"))
+
+
+def _layout(table: Any, absent: str) -> Layout:
+    lines, notes = _content(table, absent)
+    return Layout(
+        caption="Radiation and gas pressure of the targets",
+        label="tab:pressure",
+        heads=["Star", *(head for head, _ in _SHOWN.values()), "Notes"],
+        units=["", *(unit for _, unit in _SHOWN.values()), ""],
+        lines=lines,
+        notes=notes,
+    )
 
 
 def _content(table: Any, absent: str) -> tuple[list[list[str]], str]:
