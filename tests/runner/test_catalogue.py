@@ -22,8 +22,8 @@ def content(folder):
     return [(folder / name).read_bytes() for name in TABLES]
 
 
-def test_a_run_holds_every_row_in_order_and_says_what_failed(catalogue, recipe, tmp_path):
-    run = fit_catalogue(catalogue, tmp_path / "run", recipe=recipe, workers=1)
+def test_a_run_holds_every_row_in_order_and_says_what_failed(finished):
+    run = finished
     results = run.results
     assert list(results["name"]) == [f"Mirel {i}" for i in range(1, 6)]
     assert list(results["status"]) == ["ok", "ok", "ok", "rejected", "ok"]
@@ -40,15 +40,15 @@ def test_a_run_holds_every_row_in_order_and_says_what_failed(catalogue, recipe, 
     draws = run.draws(1)
     assert len(draws) == 50
     assert run.draws(4) is None
-    assert not (tmp_path / "run" / "parts").exists()
-    meta = json.loads((tmp_path / "run" / "run.json").read_text())
+    assert not (run.folder / "parts").exists()
+    meta = json.loads((run.folder / "run.json").read_text())
     assert meta["complete"]
     assert "log-uniform" in meta["priors"]["temperature"]
     assert run.model(1).band_flux(draws).shape == (50, 3)
 
 
-def test_columns_are_those_of_the_contract(catalogue, recipe, tmp_path):
-    run = fit_catalogue(catalogue, tmp_path / "run", recipe=recipe, workers=1)
+def test_columns_are_those_of_the_contract(finished):
+    run = finished
     quantities = ["temperature", "angular_diameter", "av", "misfit", "bolometric_flux"]
     quantities += ["distance", "radius", "luminosity"]
     expected = ["name", "status", "message", "flags", "engine", "emitter", "n_bands"]
@@ -62,27 +62,25 @@ def test_columns_are_those_of_the_contract(catalogue, recipe, tmp_path):
     assert units["luminosity"] == "solLum"
 
 
-def test_workers_and_order_change_no_bit(catalogue, recipe, tmp_path):
-    fit_catalogue(catalogue, tmp_path / "one", recipe=recipe, workers=1)
+def test_workers_and_order_change_no_bit(catalogue, recipe, finished, tmp_path):
     fit_catalogue(catalogue, tmp_path / "two", recipe=recipe, workers=2)
-    assert content(tmp_path / "one") == content(tmp_path / "two")
+    assert content(finished.folder) == content(tmp_path / "two")
     head, *rows = ROWS.strip().splitlines()
     path = tmp_path / "turned.csv"
     path.write_text("\n".join([head, *reversed(rows)]) + "\n")
     turned = fit_catalogue(read_catalogue(path), tmp_path / "three", recipe=recipe, workers=1)
-    plain = open_run(tmp_path / "one").results
+    plain = open_run(finished.folder).results
     for name in ("temperature", "radius_hi", "n_eff", "fit_probability"):
         np.testing.assert_array_equal(plain[name], turned.results[name][::-1])
 
 
-def test_a_star_alone_is_the_star_in_company(catalogue, recipe, tmp_path):
-    run = fit_catalogue(catalogue, tmp_path / "run", recipe=recipe, workers=1)
+def test_a_star_alone_is_the_star_in_company(catalogue, recipe, finished):
+    run = finished
     alone = fit(catalogue.rows(1, 2)[0], settings=recipe.settings, rng=7)
     assert run.results["temperature"][1] == alone.summary["temperature"][0]
 
 
-def test_an_interrupted_run_resumes_to_the_same_bytes(catalogue, recipe, tmp_path):
-    fit_catalogue(catalogue, tmp_path / "whole", recipe=recipe, workers=1)
+def test_an_interrupted_run_resumes_to_the_same_bytes(catalogue, recipe, finished, tmp_path):
 
     def stop(state):
         if state.done >= 2:
@@ -97,7 +95,7 @@ def test_an_interrupted_run_resumes_to_the_same_bytes(catalogue, recipe, tmp_pat
         open_run(folder)
     seen = []
     fit_catalogue(catalogue, folder, recipe=recipe, workers=1, progress=lambda s: seen.append(s))
-    assert content(folder) == content(tmp_path / "whole")
+    assert content(folder) == content(finished.folder)
     assert seen[0].done >= 3
     before = content(folder)
     fit_catalogue(catalogue, folder, recipe=recipe, workers=1)
@@ -112,25 +110,24 @@ def test_an_interrupted_run_resumes_to_the_same_bytes(catalogue, recipe, tmp_pat
         ({"engine": "ensemble", "emitter": "blackbody", "keep_draws": False}, "draws kept"),
     ],
 )
-def test_another_run_in_the_same_folder_is_refused(catalogue, recipe, tmp_path, change, words):
-    fit_catalogue(catalogue, tmp_path / "run", recipe=recipe, workers=1)
+def test_another_run_in_the_same_folder_is_refused(catalogue, recipe, finished, change, words):
     same = {key: getattr(recipe, key) for key in ("emitter", "engine", "settings", "seed")}
     if "settings" in change:
         change = {"settings": Settings(**{**recipe.settings.as_dict(), "dust": "zero"})}
     with pytest.raises(RunFolderError, match=words):
-        fit_catalogue(catalogue, tmp_path / "run", recipe=Recipe(**{**same, **change}))
+        fit_catalogue(catalogue, finished.folder, recipe=Recipe(**{**same, **change}))
 
 
-def test_another_catalogue_in_the_same_folder_is_refused(catalogue, recipe, tmp_path):
-    fit_catalogue(catalogue, tmp_path / "run", recipe=recipe, workers=1)
+def test_another_catalogue_in_the_same_folder_is_refused(recipe, finished, tmp_path):
     path = tmp_path / "other.csv"
     path.write_text(ROWS.replace("10.23", "10.24"))
     with pytest.raises(RunFolderError, match="catalogue was"):
-        fit_catalogue(read_catalogue(path), tmp_path / "run", recipe=recipe)
+        fit_catalogue(read_catalogue(path), finished.folder, recipe=recipe)
 
 
 def test_folders_that_are_no_runs_are_refused(catalogue, recipe, tmp_path):
-    with pytest.raises(RunFolderError, match=r"holds 'stars.csv' but no run.json"):
+    (tmp_path / "notes.txt").write_text("mine")
+    with pytest.raises(RunFolderError, match=r"holds 'notes.txt' but no run.json"):
         fit_catalogue(catalogue, tmp_path, recipe=recipe)
     with pytest.raises(RunFolderError, match="is no folder"):
         open_run(tmp_path / "nowhere")
@@ -138,7 +135,7 @@ def test_folders_that_are_no_runs_are_refused(catalogue, recipe, tmp_path):
     with pytest.raises(RunFolderError, match="not a run folder"):
         open_run(tmp_path / "empty")
     with pytest.raises(StorageError, match="cannot make the run folder"):
-        fit_catalogue(catalogue, tmp_path / "stars.csv" / "run", recipe=recipe)
+        fit_catalogue(catalogue, tmp_path / "notes.txt" / "run", recipe=recipe)
 
 
 def test_a_damaged_part_is_named(catalogue, recipe, tmp_path):

@@ -151,7 +151,7 @@ def read_parts(folder: Path) -> Iterator[Part]:
     """
     for path in sorted((folder / PARTS).glob("rows-*.npz")):
         try:
-            with np.load(path, allow_pickle=False) as stored:
+            with path.open("rb") as stream, np.load(stream, allow_pickle=False) as stored:
                 results = json.loads(str(stored["results"]))
                 draws = [
                     dict(zip(map(str, stored[f"names{i}"]), stored[f"draws{i}"], strict=True))
