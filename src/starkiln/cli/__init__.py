@@ -67,7 +67,12 @@ def main(argv: Sequence[str] | None = None) -> int:
 
 
 def _parser(words: Sequence[str]) -> argparse.ArgumentParser:
-    parser = argparse.ArgumentParser(prog="starkiln", description=_DESCRIPTION, allow_abbrev=False)
+    parser = argparse.ArgumentParser(
+        prog="starkiln",
+        description=_DESCRIPTION,
+        allow_abbrev=False,
+        formatter_class=lambda prog: argparse.HelpFormatter(prog, max_help_position=16),
+    )
     parser.add_argument("--version", action="version", version=f"starkiln {__version__}")
     commands = parser.add_subparsers(dest="command", metavar="COMMAND", title="commands")
     chosen = next((word for word in words if not word.startswith("-")), None)

@@ -21,9 +21,9 @@ Also read: name, parallax (mas), distance (pc), av (mag), rv, teff (K), each wit
 e_. Other headings are bound by a column sheet. `starkiln inspect CATALOGUE` tells
 what would be understood, and what not.
 
-DIR will hold results.FORMAT (one row per input star, in input order), photometry.
-FORMAT (the data as understood), draws.fits (posterior draws) and run.json (options,
-priors, seed, versions). The same command on the same DIR resumes where it stopped.
+DIR will hold results.FORMAT (one row per input star, in input order),
+photometry.FORMAT (the data as understood), draws.fits (posterior draws) and run.json
+(options, priors, seed, versions). The same command on the same DIR resumes.
 
 Dust: 'column' takes each row's av +- e_av, and A_V = 0 where it gives none. 'free'
 fits it, with a half-normal prior; a blackbody then takes a cool star's line
@@ -77,9 +77,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
         help="of results and photometry (default ecsv)",
     )
     parser.add_argument("--quiet", action="store_true", help="no priors and progress")
-    parser.epilog = (
-        f"{_NOTES}\n\nKeys of the settings file, with their defaults:\n{describe_settings()}"
-    )
+    parser.epilog = f"{_NOTES}\n\nThe settings file with every default:\n{describe_settings()}"
 
 
 def run(args: argparse.Namespace) -> int:

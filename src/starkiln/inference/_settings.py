@@ -7,6 +7,7 @@ each value and what `run.json` records are all read off its fields.
 from __future__ import annotations
 
 import math
+import textwrap
 import tomllib
 from collections.abc import Mapping
 from dataclasses import MISSING, asdict, dataclass, field, fields
@@ -215,7 +216,7 @@ def read_settings(path: str | Path, **overrides: Any) -> Settings:
 
 
 def describe_settings() -> str:
-    """Return the keys of the settings file, each with its default and meaning."""
+    """Return a settings file with every default, each key's meaning as its comment."""
     lines = []
     section = ""
     for item in fields(Settings):
@@ -224,7 +225,8 @@ def describe_settings() -> str:
             lines.append(f"[{head}]")
             section = head
         default = {} if item.default is MISSING else item.default
-        lines.append(f"  {key} = {_toml(default)}   {item.metadata['text']}")
+        lines.append(f"{key} = {_toml(default)}")
+        lines += [f"    # {line}" for line in textwrap.wrap(item.metadata["text"], 80)]
     return "\n".join(lines)
 
 
