@@ -1,8 +1,11 @@
+from pathlib import Path
+
 import numpy as np
 import pytest
 from astropy.table import Table
 
 from starkiln.cli import main
+from starkiln.runner import Run
 
 PLAIN = [
     "name",
@@ -110,13 +113,13 @@ def test_a_run_with_its_draws(capsys, monkeypatch):
         }
     )
 
-    class Done:
+    class Done(Run):
         results = Table({"name": ["one", "two"]})
 
         def draws(self, row):
             return draws if row == 1 else None
 
-    monkeypatch.setattr("starkiln.runner.open_run", lambda folder: Done())
+    monkeypatch.setattr("starkiln.runner.open_run", lambda folder: Done(Path(folder), {}))
     rows = table(capsys, "--run", "somewhere", code=3)
     assert list(rows["status"]) == ["ok", "rejected"]
     assert 8.0 < rows["mass"][0] < 11.0

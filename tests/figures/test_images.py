@@ -12,7 +12,6 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from astropy.table import Table
 from matplotlib.testing.compare import compare_images
 from tests.report.fake_run import FakeRun
 
@@ -23,7 +22,6 @@ from starkiln.report import (
     hr_plot,
     misfit_plot,
     predictive_plot,
-    pressure_plot,
     prior_figure,
     run_view,
     sed_figure,
@@ -49,14 +47,6 @@ def temperatures():
     return temperature_figure(RUN.results, known, np.full(12, 60.0))
 
 
-def pressures():
-    mass = np.array([1.0, 5.0, 20.0, 60.0])
-    ratio = np.array([4e-4, 0.012, 0.12, 0.45])
-    table = Table({"mass": mass, "mu": np.full(4, 0.62), "radiation_to_gas": ratio})
-    table["radiation_to_gas_lo"], table["radiation_to_gas_hi"] = 0.8 * ratio, 1.3 * ratio
-    return pressure_plot(table)
-
-
 FIGURES = {
     "sed": lambda: sed_figure(run_view(RUN, 5)),
     "sed_two": lambda: sed_figure(run_view(RUN, 9), width="two"),
@@ -68,7 +58,6 @@ FIGURES = {
     "hr": lambda: hr_plot(RUN),
     "misfit": lambda: misfit_plot(RUN),
     "temperature": temperatures,
-    "pressure": pressures,
 }
 
 

@@ -2,12 +2,11 @@
 
 import numpy as np
 import pytest
-from astropy.table import Table
 from tests.report.drawn import drawn_texts, outside, overlapping
 from tests.report.fake_run import BANDS, FakeRun
 
 from starkiln.errors import InputError
-from starkiln.report import hr_plot, misfit_plot, pressure_plot, run_view, temperature_figure
+from starkiln.report import hr_plot, misfit_plot, run_view, temperature_figure
 from starkiln.report._sample import band_residuals, posterior_ellipse
 from starkiln.report._tracks import main_sequence_tracks, zero_age_line
 
@@ -129,23 +128,6 @@ def test_temperature_needs_one_value_per_row(run):
         temperature_figure(run.results, [1.0, 2.0, 3.0])
     with pytest.raises(InputError, match="no star has both"):
         temperature_figure(run.results, np.full(12, np.nan))
-
-
-def test_pressure_draws_the_standard_model(monkeypatch):
-    """Eddington's quartic at M mu^2 = 18.29 sqrt(1 - beta)/beta^2: mu 1, beta 1/2 is 51.7 M_sun."""
-    mass = 18.287 * np.sqrt(0.5) / 0.25
-    table = Table({"mass": [mass, 5.0], "mu": [1.0, 1.0], "radiation_to_gas": [1.0, 0.05]})
-    table["radiation_to_gas_lo"] = [0.9, np.nan]
-    table["radiation_to_gas_hi"] = [1.2, np.nan]
-    ax = pressure_plot(table)
-    texts = shown(ax.figure, monkeypatch)
-    assert r"$M$ ($\mathrm{M_\odot}$)" in texts
-    assert r"$P_\mathrm{rad}/P_\mathrm{gas}$" in texts
-    curve = ax.lines[0]
-    at = np.exp(np.interp(np.log(mass), np.log(curve.get_xdata()), np.log(curve.get_ydata())))
-    assert at == pytest.approx(1.0, rel=1e-3)
-    with pytest.raises(InputError, match="no column 'mu'"):
-        pressure_plot(table["mass", "radiation_to_gas"])
 
 
 def test_axes_of_the_caller_are_used():

@@ -71,7 +71,7 @@ def _parser(words: Sequence[str]) -> argparse.ArgumentParser:
         prog="starkiln",
         description=_DESCRIPTION,
         allow_abbrev=False,
-        formatter_class=lambda prog: argparse.HelpFormatter(prog, max_help_position=16),
+        formatter_class=lambda prog: argparse.HelpFormatter(prog, max_help_position=18),
     )
     parser.add_argument("--version", action="version", version=f"starkiln {__version__}")
     commands = parser.add_subparsers(dest="command", metavar="COMMAND", title="commands")

@@ -6,7 +6,7 @@ import argparse
 import sys
 
 _UNASKED = ("hr", "misfit", "corner", "sed")
-_KINDS = (*_UNASKED, "prior", "predictive", "temperature", "chain", "autocorrelation")
+_KINDS = (*_UNASKED, "prior", "predictive", "temperature", "pressure", "chain", "autocorrelation")
 
 _NOTES = """\
 Kinds, of the whole run:
@@ -14,10 +14,12 @@ Kinds, of the whole run:
                    zero-age main sequence
   misfit           residuals of every band over all stars: finds wrong zero points
   temperature      fitted against published temperatures (needs --catalogue)
+  pressure         radiation over gas pressure against mass, of the stars on the grid of models
 and one file for each star:
   corner           posterior of each quantity and each pair; dashed: median, 16th, 84th percentile
   sed              photometry, model spectra, residuals in sigma and per cent
-  prior            posterior over its prior: where they agree, the data say nothing
+  prior            posterior over its prior: where they agree, the data say nothing (with
+                   --catalogue also the priors of the row's own dust and distance)
   predictive       observed fluxes among those that the posterior predicts
   chain            path of emcee's walkers (needs --catalogue: the star is fitted again, with the
                    same seed and so with the same path)

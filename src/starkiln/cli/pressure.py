@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-from pathlib import Path
 from typing import Any
 
 from starkiln.cli._options import quantity
@@ -110,14 +109,10 @@ def _by_table(args: argparse.Namespace) -> Any:
 
 
 def _by_run(args: argparse.Namespace) -> Any:
-    from starkiln.derived import pressure_table_of_draws
     from starkiln.runner import open_run
 
-    done = open_run(Path(args.folder))
-    names = [str(name) for name in done.results["name"]]
-    draws = [done.draws(row) for row in range(1, len(names) + 1)]
     known = None if args.targets is None else _columns(args.targets)
-    return pressure_table_of_draws(names, draws, known, seed=args.seed, at=args.at)
+    return open_run(args.folder).pressure_table(known, seed=args.seed, at=args.at)
 
 
 def _columns(path: str) -> dict[str, list[Any]]:

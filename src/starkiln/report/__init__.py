@@ -13,7 +13,7 @@ from starkiln.report._atmospheres import (
 )
 from starkiln.report._chain import autocorrelation_plot, chain_figure
 from starkiln.report._checks import predictive_plot, prior_figure
-from starkiln.report._comparisons import pressure_plot, temperature_figure
+from starkiln.report._comparisons import temperature_figure
 from starkiln.report._corner import corner_figure
 from starkiln.report._files import CATALOGUE_KINDS, RUN_KINDS, STAR_KINDS, Drawn, write_figures
 from starkiln.report._latex import deluxetable, latex_table
@@ -59,7 +59,6 @@ __all__ = [
     "open_for_report",
     "page",
     "predictive_plot",
-    "pressure_plot",
     "prior_figure",
     "proposal_bibtex",
     "proposal_deluxetable",

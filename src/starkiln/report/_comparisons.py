@@ -7,8 +7,7 @@ from typing import Any
 import numpy as np
 
 from starkiln.errors import InputError
-from starkiln.interiors import standard_model
-from starkiln.report._style import ACCENT, INK, MODEL, PALE, QUIET, drawing, new_figure
+from starkiln.report._style import ACCENT, INK, MODEL, PALE, new_figure
 from starkiln.report._ticks import round_ticks
 from starkiln.report._view import numbers
 
@@ -94,67 +93,3 @@ def _difference(ax: Any, known: Any, error: Any, found: Any, minus: Any, plus: A
     below, above = ax.get_ylim()
     ax.set_ylim(below, above + 0.3 * (above - below))
     ax.legend(loc="upper left")
-
-
-def pressure_plot(table: Any, *, ax: Any = None, width: str | float = "one") -> Any:
-    """Draw the ratio of radiation to gas pressure against mass.
-
-    Points: the ratio of the volume integrals, with the ends of the interval where
-    the table has them; lines: Eddington's standard model for the table's smallest
-    and largest mean particle weight (1926, The Internal Constitution of the Stars,
-    section 84).
-
-    Parameters
-    ----------
-    table : astropy.table.Table
-        With the columns `mass` (solMass), `mu` and `radiation_to_gas` of `starkiln
-        pressure`, and where known their `_lo` and `_hi`.
-    ax : matplotlib.axes.Axes, optional
-        Drawn on instead of a new one.
-    width : {"one", "two"} or float
-        Width of a new figure.
-
-    Returns
-    -------
-    matplotlib.axes.Axes
-        The axes drawn on.
-
-    Raises
-    ------
-    InputError
-        A column is missing, or no row has a mass and a ratio.
-    """
-    missing = [key for key in ("mass", "mu", "radiation_to_gas") if key not in table.colnames]
-    if missing:
-        raise InputError(f"the table has no column {missing[0]!r}: give one of starkiln pressure")
-    mass, ratio, mu = (numbers(table[key]) for key in ("mass", "radiation_to_gas", "mu"))
-    good = np.isfinite(mass) & np.isfinite(ratio) & (mass > 0.0) & (ratio > 0.0)
-    if not good.any():
-        raise InputError("no row has both a mass and a ratio of radiation to gas pressure")
-    with drawing(ax, width=width) as axes:
-        axes.set(xscale="log", yscale="log")
-        ends = (mass[good].min() / 1.5, mass[good].max() * 1.5)
-        grid = np.geomspace(*ends, 100)
-        for weight, line in zip(
-            sorted({mu[good].min(), mu[good].max()}), ("-", "--"), strict=False
-        ):
-            light, gas = standard_model(grid, weight)
-            label = rf"standard model, $\mu$ = {weight:.3g}"
-            axes.plot(grid, light / gas, color=MODEL, ls=line, label=label)
-        bars = [_bars(table, key, good) for key in ("mass", "radiation_to_gas")]
-        axes.errorbar(mass[good], ratio[good], xerr=bars[0], yerr=bars[1], fmt="o", color=INK, ms=3,
-                      elinewidth=0.7, label=f"{int(good.sum())} stars")  # fmt: skip
-        axes.axhline(1.0, color=QUIET, lw=0.5, ls=":")
-        axes.set_xlim(*ends)
-        round_ticks(axes.xaxis, ends)
-        axes.set_xlabel(r"$M$ ($\mathrm{M_\odot}$)")
-        axes.set_ylabel(r"$P_\mathrm{rad}/P_\mathrm{gas}$")
-        axes.legend(loc="lower right")
-    return axes
-
-
-def _bars(table: Any, key: str, good: np.ndarray) -> Any:
-    if f"{key}_lo" not in table.colnames:
-        return None
-    value, low, high = (numbers(table[f"{key}{end}"])[good] for end in ("", "_lo", "_hi"))
-    return np.nan_to_num([value - low, high - value])

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import partial
 from pathlib import Path
 from typing import Any
@@ -11,17 +11,20 @@ from typing import Any
 import numpy as np
 
 from starkiln.errors import InputError, StorageError
+from starkiln.inference import build_problem
 from starkiln.observations import Catalogue, Star
 from starkiln.report._chain import autocorrelation_plot, chain_figure
 from starkiln.report._checks import predictive_plot, prior_figure
 from starkiln.report._comparisons import temperature_figure
 from starkiln.report._corner import corner_figure
+from starkiln.report._priors import priors_of_problem
+from starkiln.report._proposal import proposal_plot
 from starkiln.report._sample import hr_plot, misfit_plot
 from starkiln.report._sed import sed_figure
 from starkiln.report._style import save_figure
 from starkiln.report._text import file_stem
 from starkiln.report._view import FitView, run_view, view_of
-from starkiln.runner import Run, fit
+from starkiln.runner import Run, dust_of, fit
 
 #: Figures of one star, and of a whole run; the first two of each are drawn unasked.
 STAR_KINDS: dict[str, Callable[..., Any]] = {
@@ -32,7 +35,7 @@ STAR_KINDS: dict[str, Callable[..., Any]] = {
     "chain": chain_figure,
     "autocorrelation": autocorrelation_plot,
 }
-RUN_KINDS = ("hr", "misfit", "temperature")
+RUN_KINDS = ("hr", "misfit", "temperature", "pressure")
 #: Kinds that the catalogue of the run must be given for.
 CATALOGUE_KINDS = ("chain", "autocorrelation", "temperature")
 
@@ -65,8 +68,9 @@ def write_figures(
     rows : sequence of int, optional
         Rows of the stars, counted from 1; all by default.
     catalogue : starkiln.observations.Catalogue, optional
-        The one that was fitted: published temperatures come from it, and a chain,
-        which no run folder keeps, from fitting the star again with the same seed.
+        The one that was fitted: published temperatures and a row's own priors come from
+        it, and a chain, which no run folder keeps, from fitting the star again with the
+        same seed.
     image : {"pdf", "png", "svg"}
         Kind of file.
     width : {"one", "two"} or float, optional
@@ -95,6 +99,8 @@ def write_figures(
         if not view.draws:
             yield Drawn(None, view.why_no_draws("figure"))
             continue
+        if catalogue is not None and "prior" in star_kinds:
+            view = _with_priors(view, run, row, catalogue)
         if set(star_kinds) & set(CATALOGUE_KINDS):
             view = _fitted_again(run, row, catalogue)
         for kind in star_kinds:
@@ -125,10 +131,21 @@ def _run_figure(kind: str, run: Run, catalogue: Catalogue | None, options: dict)
         return hr_plot(run, **options)
     if kind == "misfit":
         return misfit_plot(run, **options)
+    if kind == "pressure":
+        return proposal_plot(run.pressure_table(), **options)
     stars = [] if catalogue is None else catalogue.rows()
     known = [(getattr(star, "teff_k", None), getattr(star, "e_teff_k", None)) for star in stars]
     published, error = np.array(known, dtype=float).reshape(-1, 2).T
     return temperature_figure(run.results, published, error, **options)
+
+
+def _with_priors(view: FitView, run: Run, row: int, catalogue: Catalogue) -> FitView:
+    """Return the view with the priors of its own row: dust, temperature, distance."""
+    star = catalogue.rows(row - 1, row)[0]
+    if not isinstance(star, Star):
+        return view
+    problem = build_problem(star, run.emitter, dust_of(run.settings), run.settings)
+    return replace(view, priors=priors_of_problem(problem))
 
 
 def _fitted_again(run: Run, row: int, catalogue: Catalogue | None) -> FitView:

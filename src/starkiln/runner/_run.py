@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 from pathlib import Path
@@ -10,6 +10,7 @@ from typing import Any
 
 import numpy as np
 
+from starkiln.derived import pressure_table_of_draws
 from starkiln.errors import InputError, RunFolderError
 from starkiln.inference import Settings
 from starkiln.runner._folder import DRAWS, read_meta
@@ -81,6 +82,21 @@ class Run:
         used = self.photometry[(self.photometry["row"] == row) & self.photometry["used"]]
         # The fit takes detections before limits; the photometry keeps the input's order.
         return StarModel(self.emitter, self._dust(row), tuple(map(str, used["band"])))
+
+    def pressure_table(
+        self,
+        known: Mapping[str, Sequence[Any]] | None = None,
+        *,
+        seed: int = 0,
+        at: float | None = None,
+    ) -> Any:
+        """Return mass, age and light pressure of every star from its draws.
+
+        See `starkiln.derived.pressure_table_of_draws` for the parameters and the table.
+        """
+        names = [str(name) for name in self.results["name"]]
+        draws = [self.draws(row) for row in range(1, len(names) + 1)]
+        return pressure_table_of_draws(names, draws, known, seed=seed, at=at)
 
     @cached_property
     def emitter(self) -> Any:
