@@ -181,6 +181,28 @@ def _fit_row(row: Star | BadRow, recipe: Recipe) -> tuple[dict, dict | None]:
     return result_row(result), kept
 
 
+class _Tally:
+    """What this command has done so far, and at what rate."""
+
+    def __init__(self, todo: int, total: int, slots: int) -> None:
+        self._begun, self._todo, self._total, self._slots = time.monotonic(), todo, total, slots
+        self._fresh = self._rejected = 0
+
+    def add(self, part: Part) -> Progress:
+        """Count a part and return the progress after it."""
+        self._fresh += len(part.results)
+        self._rejected += sum(row["status"] == "rejected" for row in part.results)
+        done = self._total - self._todo + self._fresh
+        elapsed = time.monotonic() - self._begun
+        return Progress(done, self._total, self._rejected, elapsed, self._fresh)
+
+    @property
+    def unit_rows(self) -> int:
+        """Rows that a worker does in about `_UNIT_SECONDS`, at the rate so far."""
+        rate = self._fresh / max(time.monotonic() - self._begun, 1e-9) / self._slots
+        return min(max(1, int(rate * _UNIT_SECONDS)), _MOST_ROWS)
+
+
 def _work(
     catalogue: Catalogue,
     folder: Path,
@@ -188,53 +210,40 @@ def _work(
     workers: int,
     progress: Callable[[Progress], None] | None,
 ) -> None:
-    begun = time.monotonic()
+    """Do the rows that no part holds yet, unit by unit; each becomes a part."""
     gaps = _gaps(done_rows(folder), len(catalogue))
     todo = sum(stop - start for start, stop in gaps)
-    state = {"fresh": 0, "rejected": 0, "rate": 0.0}
     executor = make_executor(min(workers, max(todo, 1)))
+    tally = _Tally(todo, len(catalogue), executor.slots)
+    units = _units(gaps, tally)
+    # One unit waits behind each that is being done; in this process there is no waiting.
+    most = 1 if executor.slots == 1 else 2 * executor.slots
     pending: dict[Future, int] = {}
-    units = _units(gaps, state)
     finished = False
     try:
         while True:
-            while len(pending) < 2 * executor.slots and (unit := next(units, None)):
-                start, stop = unit
-                future = executor.submit(fit_rows, catalogue.rows(start, stop), recipe)
-                pending[future] = start
-                if executor.slots == 1:
-                    break
+            while len(pending) < most and (unit := next(units, None)):
+                future = executor.submit(fit_rows, catalogue.rows(*unit), recipe)
+                pending[future] = unit[0]
             if not pending:
                 break
             for future in wait(pending, return_when=FIRST_COMPLETED).done:
-                start = pending.pop(future)
-                part = Part(start, *outcome(future))
+                part = Part(pending.pop(future), *outcome(future))
                 write_part(folder, part)
-                state["fresh"] += len(part.results)
-                state["rejected"] += sum(r["status"] == "rejected" for r in part.results)
-                state["rate"] = state["fresh"] / (time.monotonic() - begun) / executor.slots
+                state = tally.add(part)
                 if progress:
-                    total = len(catalogue)
-                    progress(
-                        Progress(
-                            total - todo + int(state["fresh"]),
-                            total,
-                            int(state["rejected"]),
-                            time.monotonic() - begun,
-                            int(state["fresh"]),
-                        )
-                    )
+                    progress(state)
         finished = True
     finally:
         executor.stop(at_once=not finished)
 
 
-def _units(gaps: list[tuple[int, int]], state: dict[str, float]) -> Iterator[tuple[int, int]]:
-    """Cut what is to do into units that take about `_UNIT_SECONDS` at the rate so far."""
+def _units(gaps: list[tuple[int, int]], tally: _Tally) -> Iterator[tuple[int, int]]:
+    """Cut what is to do into units of rows."""
     for start, stop in gaps:
         here = start
         while here < stop:
-            size = min(max(1, int(state["rate"] * _UNIT_SECONDS)), _MOST_ROWS, stop - here)
+            size = min(tally.unit_rows, stop - here)
             yield here, here + size
             here += size
 
