@@ -165,3 +165,10 @@ def test_unknown_names_and_numbers_are_refused(catalogue, tmp_path):
         fit_catalogue(
             catalogue, tmp_path / "run", recipe=Recipe(settings=Settings(dust_law="none"))
         )
+
+
+def test_as_many_draws_are_kept_as_are_asked_for(catalogue):
+    star = catalogue.rows(0, 1)[0]
+    for asked in (10, 30_000):
+        settings = Settings(effective_draws=300, walkers=32, draws=asked)
+        assert len(fit(star, settings=settings).draws) >= asked

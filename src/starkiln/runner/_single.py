@@ -25,7 +25,7 @@ from starkiln.observations import Star
 from starkiln.runner._result import FitResult
 from starkiln.runner._threads import one_thread
 
-#: Draws that a result holds at most; its percentiles come from all.
+#: Draws that a result holds unless more are asked for; its percentiles come from all.
 _MOST_DRAWS = 4000
 
 
@@ -79,7 +79,7 @@ def fit(
     flags = find_flags(problem, samples, probability)
     if distance is not None and distance.sd > 0.7 * distance.prior_sd:
         flags = sorted({*flags, "prior_dominated"}, key=_FLAG_ORDER.index)
-    keep = stream.permutation(len(samples.x))[: min(_MOST_DRAWS, len(samples.x))]
+    keep = _kept(stream, len(samples.x), settings.draws)
     return FitResult(
         star=star,
         status="ok" if samples.converged else "unconverged",
@@ -157,6 +157,14 @@ def _stream(star: Star, rng: int | np.random.Generator) -> tuple[np.random.Gener
         raise SettingsError(f"seed = {rng!r} must be a whole number of at least 0")
     words = np.frombuffer(star.fingerprint(), dtype=np.uint32)
     return np.random.default_rng([int(rng), *map(int, words)]), int(rng)
+
+
+def _kept(stream: np.random.Generator, n: int, asked: int) -> np.ndarray:
+    """Return which draws are kept: `_MOST_DRAWS` at most, or as many as are asked for."""
+    order = stream.permutation(n)
+    if n < asked:
+        order = np.concatenate([order, stream.integers(0, n, asked - n)])
+    return order[: max(_MOST_DRAWS, asked)]
 
 
 def _message(
