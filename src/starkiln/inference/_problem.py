@@ -23,7 +23,7 @@ MAG = 0.4 * math.log(10.0)
 #: Largest A_V that the tables of band fluxes hold, in mag.
 AV_MAX = 10.0
 #: ln of pi/4 theta^2 for theta of one milliarcsecond.
-_LN_SOLID_ANGLE = math.log(math.pi / 4.0) + 2.0 * math.log(MAS_RAD.value)
+LN_SOLID_ANGLE = math.log(math.pi / 4.0) + 2.0 * math.log(MAS_RAD.value)
 
 
 @dataclass(frozen=True)
@@ -134,7 +134,7 @@ class Problem:
         shape = len(self.emitter.parameters)
         free = [self.column(x, "rv")] if "rv" in self.names else []
         ln_flux = self.table.ln_flux(x[:, :shape], self.av(x), *free)
-        ln_flux += (_LN_SOLID_ANGLE + 2.0 * self.column(x, "ln_diameter"))[:, None]
+        ln_flux += (LN_SOLID_ANGLE + 2.0 * self.column(x, "ln_diameter"))[:, None]
         return ln_flux
 
     def av(self, x: np.ndarray) -> np.ndarray:

@@ -1,0 +1,246 @@
+"""Where a posterior lies: nodes in misfit and temperature, and A_V along its ridge.
+
+At nodes of ln T and ln f the conditional of A_V is a Gaussian (of the model made
+linear in A_V at its own peak) cut at the bounds of A_V, so that the sharp edge at
+A_V = 0 is integrated exactly. The nodes are set anew, pass by pass, on the ranges
+of ln T where the posterior is not negligible; there may be several.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+
+from starkiln.inference._problem import Problem
+from starkiln.inference.engines import _truncated
+from starkiln.inference.engines._quadrature_surface import Surface
+
+_LN_2PI = math.log(2.0 * math.pi)
+#: Cells between two nodes of ln T, over which the density is interpolated.
+CELLS = 8
+#: Nodes in ln T and in ln f, Newton steps in A_V, and the depth below the largest
+#: density at which the range is cut, pass by pass; the last is repeated while it
+#: still shrinks.
+_PASSES = ((96, 6, 6, 40.0), (48, 8, 4, 25.0), (48, 10, 3, 18.0))
+_MOST_PASSES = 6
+#: ln of the density of the misfit, below its largest, at which its range is cut.
+_MISFIT_DEPTH = 11.0
+
+
+@dataclass(frozen=True)
+class Nodes:
+    """The posterior at nodes of ln T (j) and ln f (k).
+
+    Attributes
+    ----------
+    t : numpy.ndarray
+        ln T, shape (j,).
+    ln_misfit, ln_weight : numpy.ndarray
+        ln f and ln of its weight times its prior, shape (k,).
+    misfit : numpy.ndarray
+        f, shape (k,).
+    ln_mass : numpy.ndarray
+        ln of the density in ln T for each f, A_V and theta integrated out, (j, k).
+    av, precision : numpy.ndarray
+        Centre and inverse variance of the conditional of A_V before its cut, (j, k).
+    """
+
+    t: np.ndarray
+    ln_misfit: np.ndarray
+    ln_weight: np.ndarray
+    misfit: np.ndarray
+    ln_mass: np.ndarray
+    av: np.ndarray
+    precision: np.ndarray
+
+
+@dataclass(frozen=True)
+class Target:
+    """A star's posterior as the passes see it.
+
+    Attributes
+    ----------
+    problem : Problem
+    form
+        `LogForm` or `FluxForm`.
+    surface : Surface
+        The components of the model over the whole table.
+    """
+
+    problem: Problem
+    form: Any
+    surface: Surface
+
+    @property
+    def av_prior(self) -> Any:
+        """The prior of A_V, None where it is fixed."""
+        if self.problem.fixed_av is not None:
+            return None
+        return self.problem.parameters[self.problem.names.index("av")].prior
+
+    @property
+    def t_prior(self) -> Any:
+        """The prior of ln T."""
+        return self.problem.parameters[self.problem.names.index("ln_temperature")].prior
+
+    @property
+    def misfit_bounds(self) -> tuple[float, float] | None:
+        """The range of ln f, None where the misfit is left out."""
+        if "ln_misfit" not in self.problem.names:
+            return None
+        low, high = self.problem.bounds[self.problem.names.index("ln_misfit")]
+        return float(low), float(high)
+
+
+def find_nodes(target: Target, n_t: int, n_f: int) -> Nodes:
+    """Return `n_t` by `n_f` nodes that follow the posterior.
+
+    Parameters
+    ----------
+    target : Target
+    n_t, n_f : int
+        Nodes in ln T and in ln f of the last pass.
+    """
+    low, high = target.t_prior.lower, target.t_prior.upper
+    f_range = target.misfit_bounds
+    t = np.linspace(low, high, _PASSES[0][0])
+    start = None
+    for i in range(_MOST_PASSES):
+        _, k, steps, depth = _PASSES[min(i, len(_PASSES) - 1)]
+        nodes = evaluate(target, t, misfit_nodes(target, f_range, k), steps, start)
+        fine_t, fine = interpolated(nodes.t, nodes.ln_mass + nodes.ln_weight)
+        height = fine.max(axis=1)
+        keep = height > height.max() - depth
+        if i >= 1:
+            f_range = _narrowed(target, nodes, fine_t, fine)
+        span = np.sum(np.diff(fine_t)[keep[1:] | keep[:-1]])
+        settled = span > 0.3 * (t[-1] - t[0]) and i >= 1
+        count = _PASSES[min(i + 1, len(_PASSES) - 1)][0]
+        start = nodes
+        if settled:
+            break
+        t = _spread(fine_t, (keep[1:] | keep[:-1]).astype(float), count)
+    # Half of the last nodes evenly, half where the density is.
+    density = np.exp((height - height.max()) / 3.0)
+    density = 0.5 * (density[1:] + density[:-1])
+    even = (keep[1:] | keep[:-1]).astype(float)
+    step = np.diff(fine_t)
+    density = density * even / np.sum(density * even * step) + 0.5 * even / np.sum(even * step)
+    t = _spread(fine_t, density, n_t)
+    return evaluate(target, t, misfit_nodes(target, f_range, n_f), 3, start)
+
+
+def misfit_nodes(
+    target: Target, f_range: tuple[float, float] | None, n: int
+) -> tuple[np.ndarray, np.ndarray]:
+    """Return Gauss-Legendre nodes of ln f and ln of their weights times the prior."""
+    bounds = target.misfit_bounds
+    if bounds is None or f_range is None:
+        return np.array([-np.inf]), np.zeros(1)
+    unit, weight = np.polynomial.legendre.leggauss(n)
+    half = 0.5 * (f_range[1] - f_range[0])
+    return f_range[0] + half * (unit + 1.0), np.log(weight * half / (bounds[1] - bounds[0]))
+
+
+def evaluate(
+    target: Target,
+    t: np.ndarray,
+    misfit: tuple[np.ndarray, np.ndarray],
+    steps: int,
+    start: Nodes | None,
+) -> Nodes:
+    """Return the posterior at nodes: Gauss-Newton in A_V, then the mass of its conditional."""
+    ln_f, ln_weight = misfit
+    f = np.exp(ln_f)
+    series, slopes = target.surface.along(t)
+    prior = target.av_prior
+    shape = (t.size, f.size)
+    ln_prior_t = target.t_prior.ln_density(t)[:, None]
+    if prior is None:
+        av = np.full(shape, target.problem.fixed_av)
+        value = target.surface.across(series, av)
+        ln_like, _, _ = target.form.fit_av(value, np.zeros_like(value), f)
+        return Nodes(t, ln_f, ln_weight, f, ln_like + ln_prior_t, av, np.ones(shape))
+    mean = _first_av(prior, shape, t, ln_f, start)
+    for _ in range(steps):
+        av = np.clip(mean, prior.lower, prior.upper)
+        value = target.surface.across(series, av)
+        slope = target.surface.across(slopes, av)
+        ln_like, score, information = target.form.fit_av(value, slope, f)
+        precision = information + 1.0 / prior.width**2
+        score = score + (prior.mean - av) / prior.width**2
+        mean = av + score / precision
+    sd = 1.0 / np.sqrt(precision)
+    ln_mass = _truncated.ln_mass((prior.lower - mean) / sd, (prior.upper - mean) / sd)
+    ln_mass += ln_like + prior.ln_density(av) + 0.5 * score * score / precision
+    ln_mass += 0.5 * (_LN_2PI - np.log(precision)) + ln_prior_t
+    return Nodes(t, ln_f, ln_weight, f, ln_mass, mean, precision)
+
+
+def interpolated(t: np.ndarray, values: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
+    """Interpolate values at nodes t, shape (j, ...), by cubics to `CELLS` cells per gap."""
+    first = np.clip(np.arange(t.size - 1) - 1, 0, t.size - 4)
+    support = first[:, None] + np.arange(4)
+    x = t[:-1, None] + np.diff(t)[:, None] * np.arange(CELLS) / CELLS
+    near = t[support]
+    basis = np.ones((t.size - 1, CELLS, 4))
+    for a in range(4):
+        for b in range(4):
+            if a != b:
+                basis[:, :, a] *= (x - near[:, b : b + 1]) / (near[:, a] - near[:, b])[:, None]
+    fine = np.matmul(basis, values[support]).reshape(-1, values.shape[1])
+    return np.append(x.ravel(), t[-1]), np.concatenate([fine, values[-1:]])
+
+
+def _first_av(
+    prior: Any, shape: tuple[int, int], t: np.ndarray, ln_f: np.ndarray, start: Nodes | None
+) -> np.ndarray:
+    if start is None:
+        return np.full(shape, np.clip(prior.mean, 0.5, 0.5 * prior.upper))
+    clipped = np.clip(start.av, prior.lower, prior.upper)
+    columns = [np.interp(t, start.t, column) for column in clipped.T]
+    nearest = np.abs(ln_f[:, None] - start.ln_misfit).argmin(axis=1) if ln_f.size > 1 else [0]
+    return np.array(columns)[nearest].T
+
+
+def _narrowed(
+    target: Target, nodes: Nodes, fine_t: np.ndarray, fine: np.ndarray
+) -> tuple[float, float] | None:
+    """Return the range of ln f that holds the posterior."""
+    if nodes.ln_misfit.size == 1:
+        return target.misfit_bounds
+    top = fine.max()
+    step = np.diff(fine_t)
+    cells = np.exp(fine - top)
+    mass = step @ (0.5 * (cells[1:] + cells[:-1]))
+    ln_density = np.log(np.maximum(mass, 1e-300)) - nodes.ln_weight
+    low, high = target.misfit_bounds
+    grid = np.linspace(low, high, 65)
+    shape = np.interp(grid, nodes.ln_misfit, ln_density)
+    for side in (0, -1):
+        _extend(shape, grid, nodes.ln_misfit, ln_density, side)
+    inside = np.flatnonzero(shape > shape.max() - _MISFIT_DEPTH)
+    return float(grid[max(inside[0] - 1, 0)]), float(grid[min(inside[-1] + 1, 64)])
+
+
+def _extend(
+    shape: np.ndarray, grid: np.ndarray, x: np.ndarray, y: np.ndarray, side: int
+) -> None:
+    """Carry the outermost slope of y(x) on to the end of `grid`, in place."""
+    other = 1 if side == 0 else -2
+    slope = (y[other] - y[side]) / (x[other] - x[side])
+    beyond = grid < x[0] if side == 0 else grid > x[-1]
+    shape[beyond] = y[side] + slope * (grid[beyond] - x[side])
+
+
+def _spread(x: np.ndarray, density: np.ndarray, n: int) -> np.ndarray:
+    """Return n points, the ends of the support among them, spaced by a density per cell."""
+    cumulative = np.concatenate([[0.0], np.cumsum(density * np.diff(x))])
+    held = np.flatnonzero(density > 0.0)
+    cumulative, x = cumulative[held[0] : held[-1] + 2], x[held[0] : held[-1] + 2]
+    # Gaps between modes keep a little, or the inverse would not be one.
+    cumulative = cumulative + 1e-9 * cumulative[-1] * (x - x[0]) / (x[-1] - x[0])
+    return np.interp(np.linspace(cumulative[0], cumulative[-1], n), cumulative, x)
