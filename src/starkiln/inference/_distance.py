@@ -45,11 +45,17 @@ class DistancePosterior:
     prior_sd: float
     sd: float
 
-    def draw(self, rng: np.random.Generator, n: int) -> np.ndarray:
-        """Return `n` draws in pc, in random order, stratified to lower their noise."""
+    def draw(
+        self, rng: np.random.Generator, n: int, levels: np.ndarray | None = None
+    ) -> np.ndarray:
+        """Return `n` draws in pc, in random order, stratified to lower their noise.
+
+        With `levels` between 0 and 1, shape (n,), the draws are those at these levels.
+        """
         if self.distance_pc.size == 1:
             return np.full(n, self.distance_pc[0])
-        levels = (rng.permutation(n) + rng.uniform(size=n)) / n
+        if levels is None:
+            levels = (rng.permutation(n) + rng.uniform(size=n)) / n
         return np.interp(levels, self.cumulative, self.distance_pc)
 
 

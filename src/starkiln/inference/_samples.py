@@ -29,6 +29,12 @@ class Samples:
         Steps of `chain` before those in `x`.
     autocorrelation : numpy.ndarray or None
         Ensemble engine: autocorrelation time of each parameter, in steps.
+    error : float
+        Quadrature engine: the largest standard error of a percentile, in sigma of its
+        quantity; else NaN.
+    spare : numpy.ndarray or None
+        Quadrature engine: levels between 0 and 1, one per draw and spread as evenly as
+        `x`, from which one further, independent quantity may be drawn.
     """
 
     x: np.ndarray
@@ -39,3 +45,5 @@ class Samples:
     chain: np.ndarray | None = None
     burn_in: int = 0
     autocorrelation: np.ndarray | None = None
+    error: float = np.nan
+    spare: np.ndarray | None = None

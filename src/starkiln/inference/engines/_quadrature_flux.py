@@ -167,11 +167,8 @@ class FluxForm:
         own = np.sum(information.own * a * b, axis=1)
         return own - np.sum(information.spread * shared, axis=1)
 
-    def _derivatives(
-        self, ln_scaled: np.ndarray, f: np.ndarray
-    ) -> tuple[np.ndarray, _Information]:
-        """Return the derivatives of ln likelihood with respect to ln model fluxes, and
-        the information they hold."""
+    def _derivatives(self, ln_scaled: np.ndarray, f: np.ndarray) -> tuple[np.ndarray, _Information]:
+        """Return the derivatives of ln likelihood by ln model flux, and the information."""
         bands, n = self._bands, self._bands.n_detections
         model = np.exp(np.minimum(ln_scaled, 150.0))
         seen, relative = model[:, :n], f[:, None] ** 2

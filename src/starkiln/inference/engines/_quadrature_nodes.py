@@ -10,7 +10,7 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from typing import Any
+from typing import Any, NamedTuple
 
 import numpy as np
 
@@ -21,11 +21,20 @@ from starkiln.inference.engines._quadrature_surface import Surface
 _LN_2PI = math.log(2.0 * math.pi)
 #: Cells between two nodes of ln T, over which the density is interpolated.
 CELLS = 8
-#: Nodes in ln T and in ln f, Newton steps in A_V, and the depth below the largest
-#: density at which the range is cut, pass by pass; the last is repeated while it
-#: still shrinks.
-_PASSES = ((96, 6, 6, 40.0), (48, 8, 4, 25.0), (48, 10, 3, 18.0))
-_MOST_PASSES = 6
+
+
+class _Pass(NamedTuple):
+    """Nodes in ln T and ln f, Newton steps in A_V, depth at which ln of the density is cut."""
+
+    n_t: int
+    n_f: int
+    steps: int
+    depth: float
+
+
+#: The last is repeated until what is held is `_SETTLED` of the range.
+_PASSES = (_Pass(96, 6, 6, 40.0), _Pass(48, 8, 4, 25.0), _Pass(48, 10, 3, 18.0))
+_MOST_PASSES, _SETTLED = 6, 0.3
 #: ln of the density of the misfit, below its largest, at which its range is cut.
 _MISFIT_DEPTH = 11.0
 
@@ -104,33 +113,30 @@ def find_nodes(target: Target, n_t: int, n_f: int) -> Nodes:
     n_t, n_f : int
         Nodes in ln T and in ln f of the last pass.
     """
-    low, high = target.t_prior.lower, target.t_prior.upper
-    f_range = target.misfit_bounds
-    t = np.linspace(low, high, _PASSES[0][0])
-    start = None
+    t = np.linspace(target.t_prior.lower, target.t_prior.upper, _PASSES[0].n_t)
+    f_range, nodes = target.misfit_bounds, None
     for i in range(_MOST_PASSES):
-        _, k, steps, depth = _PASSES[min(i, len(_PASSES) - 1)]
-        nodes = evaluate(target, t, misfit_nodes(target, f_range, k), steps, start)
-        fine_t, fine = interpolated(nodes.t, nodes.ln_mass + nodes.ln_weight)
-        height = fine.max(axis=1)
-        keep = height > height.max() - depth
-        if i >= 1:
-            f_range = _narrowed(target, nodes, fine_t, fine)
-        span = np.sum(np.diff(fine_t)[keep[1:] | keep[:-1]])
-        settled = span > 0.3 * (t[-1] - t[0]) and i >= 1
-        count = _PASSES[min(i + 1, len(_PASSES) - 1)][0]
-        start = nodes
-        if settled:
-            break
-        t = _spread(fine_t, (keep[1:] | keep[:-1]).astype(float), count)
+        this, following = (_PASSES[min(j, len(_PASSES) - 1)] for j in (i, i + 1))
+        nodes = evaluate(target, t, misfit_nodes(target, f_range, this.n_f), this.steps, nodes)
+        fine_t, height = interpolated(nodes.t, nodes.ln_mass + nodes.ln_weight)
+        held = _held(height.max(axis=1), this.depth)
+        if i > 0:
+            f_range = _narrowed(target, nodes, fine_t, height)
+            if held @ np.diff(fine_t) > _SETTLED * (t[-1] - t[0]):
+                break
+        t = _spread(fine_t, held, following.n_t)
     # Half of the last nodes evenly, half where the density is.
-    density = np.exp((height - height.max()) / 3.0)
-    density = 0.5 * (density[1:] + density[:-1])
-    even = (keep[1:] | keep[:-1]).astype(float)
+    peak = np.exp((height.max(axis=1) - height.max()) / 3.0)
+    peak = 0.5 * (peak[1:] + peak[:-1]) * held
     step = np.diff(fine_t)
-    density = density * even / np.sum(density * even * step) + 0.5 * even / np.sum(even * step)
-    t = _spread(fine_t, density, n_t)
-    return evaluate(target, t, misfit_nodes(target, f_range, n_f), 3, start)
+    t = _spread(fine_t, peak / (peak @ step) + held / (held @ step), n_t)
+    return evaluate(target, t, misfit_nodes(target, f_range, n_f), _PASSES[-1].steps, nodes)
+
+
+def _held(height: np.ndarray, depth: float) -> np.ndarray:
+    """Return 1 for cells with an end above the cut, 0 for the others."""
+    keep = height > height.max() - depth
+    return (keep[1:] | keep[:-1]).astype(float)
 
 
 def misfit_nodes(
@@ -210,14 +216,15 @@ def _narrowed(
     target: Target, nodes: Nodes, fine_t: np.ndarray, fine: np.ndarray
 ) -> tuple[float, float] | None:
     """Return the range of ln f that holds the posterior."""
-    if nodes.ln_misfit.size == 1:
-        return target.misfit_bounds
+    bounds = target.misfit_bounds
+    if bounds is None:
+        return None
     top = fine.max()
     step = np.diff(fine_t)
     cells = np.exp(fine - top)
     mass = step @ (0.5 * (cells[1:] + cells[:-1]))
     ln_density = np.log(np.maximum(mass, 1e-300)) - nodes.ln_weight
-    low, high = target.misfit_bounds
+    low, high = bounds
     grid = np.linspace(low, high, 65)
     shape = np.interp(grid, nodes.ln_misfit, ln_density)
     for side in (0, -1):
@@ -226,9 +233,7 @@ def _narrowed(
     return float(grid[max(inside[0] - 1, 0)]), float(grid[min(inside[-1] + 1, 64)])
 
 
-def _extend(
-    shape: np.ndarray, grid: np.ndarray, x: np.ndarray, y: np.ndarray, side: int
-) -> None:
+def _extend(shape: np.ndarray, grid: np.ndarray, x: np.ndarray, y: np.ndarray, side: int) -> None:
     """Carry the outermost slope of y(x) on to the end of `grid`, in place."""
     other = 1 if side == 0 else -2
     slope = (y[other] - y[side]) / (x[other] - x[side])
