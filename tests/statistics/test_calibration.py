@@ -25,9 +25,7 @@ CASES = {
     "free dust": Settings(dust="free"),
     "dust from the column": Settings(),
     "no misfit": Settings(dust="free", misfit=False),
-    "faint, in flux, with limits": Settings(
-        dust="free", likelihood="flux", diameter_range=FAINT
-    ),
+    "faint, in flux, with limits": Settings(dust="free", likelihood="flux", diameter_range=FAINT),
 }
 QUANTITIES = (
     "temperature",

@@ -73,9 +73,7 @@ def fit(
     stream, seed = _stream(star, rng)
     with one_thread():
         samples = engine_of(engine)(problem, stream)
-    distance_pc = (
-        None if distance is None else distance.draw(stream, len(samples.x), samples.spare)
-    )
+    distance_pc = None if distance is None else distance.draw(stream, len(samples.x), samples.spare)
     draws = quantities_of(problem, samples.x, distance_pc)
     probability = fit_probability(problem, samples)
     flags = find_flags(problem, samples, probability)

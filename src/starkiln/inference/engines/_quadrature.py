@@ -35,18 +35,28 @@ _LEVELS = np.array([0.16, 0.5, 0.84])
 _STEP = 0.04
 
 
-def run_quadrature(problem: Problem, rng: np.random.Generator) -> Samples:
+def run_quadrature(
+    problem: Problem,
+    rng: np.random.Generator,
+    *,
+    nodes: tuple[int, int] = NODES,
+    aim: float = AIM,
+) -> Samples:
     """Explore the posterior by quadrature.
 
     The lattice grows until the standard error of the 16th, 50th and 84th percentiles
     of every parameter and of the bolometric flux, from the scatter of its shifts, is
-    below `AIM` of the posterior's sigma.
+    below `aim` of the posterior's sigma.
 
     Parameters
     ----------
     problem : Problem
     rng : numpy.random.Generator
         Shifts the lattices.
+    nodes : tuple of int
+        Nodes in ln T and in ln f; more for a reference.
+    aim : float
+        The standard error aimed at; smaller for a reference.
 
     Returns
     -------
@@ -55,10 +65,10 @@ def run_quadrature(problem: Problem, rng: np.random.Generator) -> Samples:
         above `TOLERANCE`, or fewer than a tenth of the draws count.
     """
     target = target_of(problem)
-    mapping = Mapping(target, find_nodes(target, *NODES))
+    mapping = Mapping(target, find_nodes(target, *nodes))
     for points in MULTIPLIERS:
         samples = _samples(mapping.cloud(shifted_lattices(rng, points, _SHIFTS)), problem, rng)
-        if samples.error <= AIM:
+        if samples.error <= aim:
             break
     return samples
 

@@ -16,6 +16,10 @@ from starkiln.inference.engines._quadrature_nodes import Nodes, Target, interpol
 
 #: Points of the distribution of ln f, interpolated between its nodes.
 _FINE = 257
+#: Share of the points spread evenly over ln T: mass that the nodes missed shows in their weights.
+_SCOUTS = 0.01
+#: A conditional of A_V wider than this share of its prior is drawn in part from the prior.
+_WEAK = 0.3
 
 
 @dataclass(frozen=True)
@@ -49,7 +53,8 @@ class Mapping:
         self._t, fine = interpolated(nodes.t, np.concatenate(columns, axis=1))
         density = np.exp(fine[:, :k] - fine[:, :k].max())
         cell = 0.5 * (density[1:] + density[:-1]) * np.diff(self._t)[:, None]
-        self._cell = cell / cell.sum()
+        scouts = np.diff(self._t)[:, None] * cell.sum(axis=0) / (self._t[-1] - self._t[0])
+        self._cell = ((1.0 - _SCOUTS) * cell + _SCOUTS * scouts) / cell.sum()
         self._av, self._ln_sd = fine[:, k : 2 * k], fine[:, 2 * k :]
         self._target, self._nodes = target, nodes
 
@@ -103,8 +108,23 @@ class Mapping:
             (1.0 - part) * table[i, k] + part * table[i + 1, k] for table in (self._av, self._ln_sd)
         )
         sd = np.exp(ln_sd)
-        z, ln_density = _truncated.draw(u, (prior.lower - mean) / sd, (prior.upper - mean) / sd)
-        return np.clip(mean + sd * z, prior.lower, prior.upper), ln_density - ln_sd
+        low, high = (prior.lower - mean) / sd, (prior.upper - mean) / sd
+        share = np.where(sd > _WEAK * prior.width, self._target.form.defence, 0.0)
+        plain = u < share
+        z, ln_density = _truncated.draw(np.maximum(u - share, 0.0) / (1.0 - share), low, high)
+        av = np.clip(mean + sd * z, prior.lower, prior.upper)
+        if not np.any(plain):
+            return av, ln_density - ln_sd
+        edges = [(edge - prior.mean) / prior.width for edge in (prior.lower, prior.upper)]
+        z, _ = _truncated.draw(u[plain] / share[plain], *(np.full(plain.sum(), e) for e in edges))
+        av[plain] = np.clip(prior.mean + prior.width * z, prior.lower, prior.upper)
+        ln_density[plain] = _truncated.ln_density(
+            (av - mean)[plain] / sd[plain], low[plain], high[plain]
+        )
+        return av, np.logaddexp(
+            np.log1p(-share) + ln_density - ln_sd,
+            np.log(np.maximum(share, 1e-300)) + prior.ln_density(av),
+        )
 
     def _ln_misfit(self, level: np.ndarray) -> np.ndarray:
         """Return ln f at levels of its distribution, a polynomial's exponential."""

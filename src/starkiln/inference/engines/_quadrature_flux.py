@@ -19,7 +19,7 @@ from starkiln.inference._problem import LN_SOLID_ANGLE, Problem
 from starkiln.inference.engines import _truncated
 
 #: Fisher steps to the peak in s, none longer than `_LONGEST`; the last is below `_NEAR` widths.
-_STEPS, _LONGEST, _NEAR = 5, 1.0, 0.05
+_STEPS, _LONGEST, _NEAR = 12, 1.5, 0.05
 #: Narrower than this in s the posterior is drawn from a Gaussian in place of the table.
 _GAUSSIAN = 0.25
 #: The table: even steps to so many widths, then growing ones to the bounds.
@@ -43,6 +43,9 @@ class FluxForm:
     The attributes and methods are those of `LogForm`; the components are the bands,
     in units of their errors.
     """
+
+    #: A_V's conditional is no Gaussian where few bands are seen.
+    defence = 0.4
 
     def __init__(self, problem: Problem) -> None:
         self._bands = problem.bands
@@ -148,7 +151,7 @@ class FluxForm:
         weight = 1.0 / (1.0 / seen**2 + f[:, None] ** 2)
         s = np.sum(weight * (np.log(seen) - value[:, :n]), axis=1) / weight.sum(axis=1)
         # Fainter than one sigma all bands together, the likelihood is flat.
-        faintest = -0.5 * np.log(np.sum(np.exp(2.0 * value[:, :n]), axis=1))
+        faintest = -0.5 * np.log(np.sum(np.exp(2.0 * value), axis=1))
         for _ in range(_STEPS):
             gradient, information = self._derivatives(value + s[:, None], f)
             one = np.ones_like(value)

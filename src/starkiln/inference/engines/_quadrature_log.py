@@ -28,6 +28,9 @@ class LogForm:
         To be added to ln flux per steradian before the rotation, per band.
     """
 
+    #: Share of the draws of A_V that follow its prior where the data say little of it.
+    defence = 0.0
+
     def __init__(self, problem: Problem) -> None:
         bands = problem.bands
         shared = (bands.member * bands.offset_variance) @ bands.member.T

@@ -35,6 +35,8 @@ class _Pass(NamedTuple):
 #: The last is repeated until what is held is `_SETTLED` of the range.
 _PASSES = (_Pass(96, 6, 6, 40.0), _Pass(48, 8, 4, 25.0), _Pass(48, 10, 3, 18.0))
 _MOST_PASSES, _SETTLED = 6, 0.3
+#: The longest step in A_V, mag.
+_LONGEST = 3.0
 #: ln of the density of the misfit, below its largest, at which its range is cut.
 _MISFIT_DEPTH = 11.0
 
@@ -178,11 +180,14 @@ def evaluate(
         ln_like, score, information = target.form.fit_av(value, slope, f)
         precision = information + 1.0 / prior.width**2
         score = score + (prior.mean - av) / prior.width**2
-        mean = av + score / precision
+        mean = av + np.clip(score / precision, -_LONGEST, _LONGEST)
     sd = 1.0 / np.sqrt(precision)
     ln_mass = _truncated.ln_mass((prior.lower - mean) / sd, (prior.upper - mean) / sd)
-    ln_mass += ln_like + prior.ln_density(av) + 0.5 * score * score / precision
+    ln_mass += ln_like + prior.ln_density(av) + 0.5 * precision * (mean - av) ** 2
     ln_mass += 0.5 * (_LN_2PI - np.log(precision)) + ln_prior_t
+    # A peak that is not reached yet is not to be believed as high as it is extrapolated.
+    ahead = np.clip(mean, prior.lower, prior.upper) - av
+    ln_mass -= np.maximum(ahead * (score - 0.5 * precision * ahead) - 1.0, 0.0)
     return Nodes(t, ln_f, ln_weight, f, ln_mass, mean, precision)
 
 

@@ -18,6 +18,11 @@ def ln_mass(low: np.ndarray, high: np.ndarray) -> np.ndarray:
     return inner + np.log1p(-np.exp(np.minimum(outer - inner, -1e-300)))
 
 
+def ln_density(z: np.ndarray, low: np.ndarray, high: np.ndarray) -> np.ndarray:
+    """Return ln of the density at z of a unit Gaussian cut at `low` and `high`."""
+    return -0.5 * (z * z + _LN_2PI) - ln_mass(low, high)
+
+
 def draw(u: np.ndarray, low: np.ndarray, high: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     """Invert the distribution of a unit Gaussian cut at `low` and `high`.
 
