@@ -63,7 +63,6 @@ def chances(levels):
 def test_ranks_of_the_truth_are_uniform(case: str) -> None:
     levels, failed = ranks(CASES[case], CASES[case], 2000)
     found = chances(levels)
-    print(case, {name: round(p, 3) for name, p in found.items()}, f"unconverged {failed:.4f}")
     assert failed < 0.01
     assert min(found.values()) > SMALLEST_P, found
 

@@ -51,7 +51,7 @@ def draw(u: np.ndarray, low: np.ndarray, high: np.ndarray) -> tuple[np.ndarray, 
     if np.any(distant):
         rate = np.where(distant, near, 1.0)
         reach = -np.expm1(-rate * (far - near))
-        step = -np.log1p(-u * reach) / rate
+        step = -np.log1p(-np.minimum(u * reach, 1.0 - 2.0**-53)) / rate
         z = np.where(distant, near + step, z)
         tail = np.log(rate) - rate * step - np.log(reach)
         ln_density = np.where(distant, tail, ln_density)
