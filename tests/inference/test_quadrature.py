@@ -131,15 +131,21 @@ def test_surface_is_the_table():
     np.testing.assert_allclose(surface.at(t, av), expected, atol=2e-5)
 
 
-def test_weights_are_the_posterior_of_the_ensemble():
-    # Points of equal weight have ln posterior minus ln density in common; so the
-    # density of the draws in ln T must fall where the posterior does.
-    for photometry in (WARM, DARK):
-        problem = problem_of(photometry, dust="free", misfit=False)
-        samples = solve(problem)
-        gain = problem.ln_posterior(samples.x[::64])
-        assert np.all(np.isfinite(gain))
-        assert gain.max() - np.median(gain) < 8.0
+@pytest.mark.parametrize("photometry", [WARM, DARK], ids=["Gaussian", "table"])
+def test_draws_of_theta_in_flux_have_the_density_that_is_stated(photometry):
+    # The derivative of a point by its level is one over its density.
+    problem = problem_of(photometry, dust="free", likelihood="flux")
+    target = _quadrature.target_of(problem)
+    level = np.linspace(0.005, 0.995, 991)
+    point = target.surface.at(np.full(991, 8.65), np.full(991, 0.3))
+    misfit = np.full(991, 0.05)
+    diameter, ln_weight = target.form.settle(point, misfit, level)
+    x = np.column_stack([np.full(991, 8.65), diameter, np.full(991, 0.3), np.log(misfit)])
+    ln_prior = -np.log(np.ptp(problem.bounds[1]))
+    ln_density = problem.ln_likelihood(x) + ln_prior - ln_weight
+    measured = -np.log(np.gradient(diameter, level))
+    assert np.abs(ln_density - measured)[5:-5].max() < 0.1
+    assert abs(np.mean(ln_density - measured)) < 0.01
 
 
 @pytest.mark.parametrize(("low", "high"), [(-1.0, 2.0), (-9.0, 0.5), (0.5, 3.0), (4.0, 30.0)])
