@@ -22,4 +22,5 @@ def shifted_lattices(rng: np.random.Generator, points: int, shifts: int) -> np.n
     for _ in range(DIMENSIONS - 1):
         generator.append(generator[-1] * MULTIPLIERS[points] % points)
     lattice = np.outer(np.arange(points), generator) / points
-    return (lattice + rng.uniform(size=(shifts, 1, DIMENSIONS))) % 1.0
+    # No level is 0, where an unbounded distribution has no point.
+    return np.maximum((lattice + rng.uniform(size=(shifts, 1, DIMENSIONS))) % 1.0, 2.0**-53)

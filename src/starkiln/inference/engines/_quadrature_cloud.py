@@ -12,7 +12,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from starkiln.inference.engines import _truncated
-from starkiln.inference.engines._quadrature_nodes import Nodes, Target, interpolated
+from starkiln.inference.engines._quadrature_nodes import Nodes, Target, interpolated, legendre
 
 #: Points of the distribution of ln f, interpolated between its nodes.
 _FINE = 257
@@ -129,7 +129,7 @@ class Mapping:
     def _ln_misfit(self, level: np.ndarray) -> np.ndarray:
         """Return ln f at levels of its distribution, a polynomial's exponential."""
         x = self._nodes.ln_misfit
-        unit, weight = np.polynomial.legendre.leggauss(x.size)
+        unit, weight = legendre(x.size)
         ln_share = np.log(np.maximum(self._cell.sum(axis=0), 1e-300))
         ln_density = ln_share - self._nodes.ln_weight
         ln_density = np.maximum(ln_density - ln_density.max(), -40.0)

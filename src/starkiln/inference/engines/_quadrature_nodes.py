@@ -10,6 +10,7 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from functools import lru_cache
 from typing import Any, NamedTuple
 
 import numpy as np
@@ -37,6 +38,8 @@ _PASSES = (_Pass(96, 6, 6, 40.0), _Pass(48, 8, 4, 25.0), _Pass(48, 10, 3, 18.0))
 _MOST_PASSES, _SETTLED = 6, 0.3
 #: The longest step in A_V, mag.
 _LONGEST = 3.0
+#: The last step is below this share of the conditional's width.
+_NEAR = 0.1
 #: ln of the density of the misfit, below its largest, at which its range is cut.
 _MISFIT_DEPTH = 11.0
 
@@ -141,6 +144,12 @@ def _held(height: np.ndarray, depth: float) -> np.ndarray:
     return (keep[1:] | keep[:-1]).astype(float)
 
 
+@lru_cache(maxsize=16)
+def legendre(n: int) -> tuple[np.ndarray, np.ndarray]:
+    """Return the Gauss-Legendre nodes and weights on [-1, 1]."""
+    return np.polynomial.legendre.leggauss(n)
+
+
 def misfit_nodes(
     target: Target, f_range: tuple[float, float] | None, n: int
 ) -> tuple[np.ndarray, np.ndarray]:
@@ -148,7 +157,7 @@ def misfit_nodes(
     bounds = target.misfit_bounds
     if bounds is None or f_range is None:
         return np.array([-np.inf]), np.zeros(1)
-    unit, weight = np.polynomial.legendre.leggauss(n)
+    unit, weight = legendre(n)
     half = 0.5 * (f_range[1] - f_range[0])
     return f_range[0] + half * (unit + 1.0), np.log(weight * half / (bounds[1] - bounds[0]))
 
@@ -181,12 +190,14 @@ def evaluate(
         precision = information + 1.0 / prior.width**2
         score = score + (prior.mean - av) / prior.width**2
         mean = av + np.clip(score / precision, -_LONGEST, _LONGEST)
+        ahead = np.clip(mean, prior.lower, prior.upper) - av
+        if np.all(ahead * ahead * precision < _NEAR**2):
+            break
     sd = 1.0 / np.sqrt(precision)
     ln_mass = _truncated.ln_mass((prior.lower - mean) / sd, (prior.upper - mean) / sd)
     ln_mass += ln_like + prior.ln_density(av) + 0.5 * precision * (mean - av) ** 2
     ln_mass += 0.5 * (_LN_2PI - np.log(precision)) + ln_prior_t
     # A peak that is not reached yet is not to be believed as high as it is extrapolated.
-    ahead = np.clip(mean, prior.lower, prior.upper) - av
     ln_mass -= np.maximum(ahead * (score - 0.5 * precision * ahead) - 1.0, 0.0)
     return Nodes(t, ln_f, ln_weight, f, ln_mass, mean, precision)
 
