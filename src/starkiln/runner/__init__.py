@@ -6,6 +6,7 @@ from starkiln.runner._catalogue import (
     Recipe,
     fit_catalogue,
 )
+from starkiln.runner._estimate import Estimate, estimate
 from starkiln.runner._model import StarModel
 from starkiln.runner._result import FitResult, Interval, interval_text
 from starkiln.runner._run import Run, open_run
@@ -13,6 +14,7 @@ from starkiln.runner._single import dust_of, emitter_of, fit
 
 __all__ = [
     "MOST_ROWS_WITH_DRAWS",
+    "Estimate",
     "FitResult",
     "Interval",
     "Progress",
@@ -21,6 +23,7 @@ __all__ = [
     "StarModel",
     "dust_of",
     "emitter_of",
+    "estimate",
     "fit",
     "fit_catalogue",
     "interval_text",
