@@ -19,7 +19,7 @@ from starkiln.inference._problem import LN_SOLID_ANGLE, Problem
 from starkiln.inference.engines import _truncated
 
 #: Fisher steps to the peak in s, none longer than `_LONGEST`; the last is below `_NEAR` widths.
-_STEPS, _LONGEST, _NEAR = 12, 1.5, 0.05
+_STEPS, _LONGEST, _NEAR = 12, 1.5, 0.1
 #: Narrower than this in s the posterior is drawn from a Gaussian in place of the table.
 _GAUSSIAN = 0.25
 #: The table: even steps to so many widths, then growing ones to the bounds.
@@ -152,15 +152,20 @@ class FluxForm:
         s = np.sum(weight * (np.log(seen) - value[:, :n]), axis=1) / weight.sum(axis=1)
         # Fainter than one sigma all bands together, the likelihood is flat.
         faintest = -0.5 * np.log(np.sum(np.exp(2.0 * value), axis=1))
+        width, moving = np.empty_like(s), np.arange(s.size)
         for _ in range(_STEPS):
-            gradient, information = self._derivatives(value + s[:, None], f)
-            one = np.ones_like(value)
+            here = value[moving] + s[moving, None]
+            gradient, information = self._derivatives(here, f[moving])
+            one = np.ones_like(here)
             total = np.maximum(self._inner(information, one, one), 1.0 / _WIDEST**2)
             step = np.clip(gradient.sum(axis=1) / total, -_LONGEST, _LONGEST)
-            s = np.clip(np.maximum(s + step, faintest), *self._bounds)
-            if np.all(np.abs(step) * np.sqrt(total) < _NEAR):
+            ahead = np.clip(np.maximum(s[moving] + step, faintest[moving]), *self._bounds)
+            moved = np.abs(ahead - s[moving])
+            s[moving], width[moving] = ahead, 1.0 / np.sqrt(total)
+            moving = moving[moved > _NEAR * width[moving]]
+            if not moving.size:
                 break
-        return s, 1.0 / np.sqrt(total)
+        return s, width
 
     def _inner(self, information: _Information, a: np.ndarray, b: np.ndarray) -> np.ndarray:
         """Return a' I b for steps a, b in the bands' ln fluxes, (m, n) -> (m,)."""
