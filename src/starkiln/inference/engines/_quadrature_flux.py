@@ -21,7 +21,7 @@ from starkiln.inference.engines import _truncated
 #: Fisher steps to the peak in s, none longer than `_LONGEST`; the last is below `_NEAR` widths.
 _STEPS, _LONGEST, _NEAR = 12, 1.5, 0.1
 #: Narrower than this in s the posterior is drawn from a Gaussian in place of the table.
-_GAUSSIAN = 0.25
+_GAUSSIAN = 0.12
 #: The table: even steps to so many widths, then growing ones to the bounds.
 _INNER = np.linspace(-6.0, 6.0, 21)
 _OUTER = np.geomspace(0.02, 1.0, 6)
