@@ -14,6 +14,7 @@ from scipy.integrate import quad
 from scipy.stats import norm, truncnorm
 
 from starkiln import Star, fit
+from starkiln.errors import SettingsError
 from starkiln.inference import ENGINES, Settings, build_problem
 from starkiln.inference.engines import _quadrature, _truncated
 from starkiln.inference.engines._lattice import MULTIPLIERS, shifted_lattices
@@ -43,8 +44,9 @@ def solve(problem, seed=3):
         (HOT, {"av": (0.6, 0.3)}, {}, (8.9, np.log(50000.0)), (0.0, 2.4)),
         (WARM, {}, {"dust": "free"}, (8.3, np.log(50000.0)), (0.0, 4.5)),
         (WARM, {}, {"dust": "free", "temperature_range": (5000.0, 6000.0)}, None, (0.0, 2.5)),
+        (WARM, {}, {"dust": "uniform", "dust_width": 0.8}, (8.3, 9.3), (0.0, 0.8)),
     ],
-    ids=["warm", "hot and dusty", "edge at A_V = 0", "edge of temperature"],
+    ids=["warm", "hot and dusty", "edge at A_V = 0", "edge of temperature", "uniform dust"],
 )
 def test_log_form_agrees_with_a_brute_force_grid(photometry, known, settings, t_range, a_range):
     problem = problem_of(photometry, known, **settings)
@@ -202,6 +204,12 @@ def test_same_seed_same_bytes():
     for name, values in first.quantities.items():
         assert values.tobytes() == again.quantities[name].tobytes()
     assert first.quantities["temperature"].tobytes() != other.quantities["temperature"].tobytes()
+
+
+def test_a_free_rv_is_refused_and_said():
+    problem = problem_of(WARM, dust="free", dust_rv_error=0.3)
+    with pytest.raises(SettingsError, match="cannot vary rv; fix it, or choose the ensemble"):
+        _quadrature.run_quadrature(problem, np.random.default_rng(0))
 
 
 def test_an_error_above_the_tolerance_is_said(monkeypatch):

@@ -69,6 +69,10 @@ def estimate(
     if not stars:
         return None
     share = left / min(workers or os.cpu_count() or 1, left)
+    if recipe.engine != "quadrature" and recipe.settings.dust_rv_error:
+        # A free R_V is beyond the quadrature engine.
+        fit_rows([stars[0]], recipe)
+        return Estimate(left, share * _seconds(stars, recipe), None)
     # The quadrature engine goes first and builds the tables, which then cost nobody.
     quick = replace(recipe, engine="quadrature")
     fit_rows(list(stars), quick)

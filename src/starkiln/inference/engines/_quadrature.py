@@ -12,6 +12,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from starkiln.errors import SettingsError
 from starkiln.inference._problem import AV_MAX, Problem
 from starkiln.inference._samples import Samples
 from starkiln.inference.engines._lattice import MULTIPLIERS, shifted_lattices
@@ -21,6 +22,8 @@ from starkiln.inference.engines._quadrature_log import LogForm
 from starkiln.inference.engines._quadrature_nodes import Target, find_nodes
 from starkiln.inference.engines._quadrature_surface import make_surface
 
+#: The parameters that the engine integrates over.
+_KNOWN = ("ln_temperature", "ln_diameter", "av", "ln_misfit")
 #: Nodes in ln T and in ln f.
 NODES = (48, 16)
 #: Shifts of the lattice; their scatter is the error.
@@ -63,7 +66,18 @@ def run_quadrature(
     Samples
         With `ln_evidence`, `error` and `spare`; unconverged where the error stays
         above `TOLERANCE`, or fewer than a tenth of the draws count.
+
+    Raises
+    ------
+    SettingsError
+        A parameter is free that the engine does not know, such as R_V.
     """
+    unknown = [name for name in problem.names if name not in _KNOWN]
+    if unknown:
+        raise SettingsError(
+            f"the quadrature engine cannot vary {', '.join(unknown)}; fix it, or choose the "
+            "ensemble engine"
+        )
     target = target_of(problem)
     mapping = Mapping(target, find_nodes(target, *nodes))
     for points in MULTIPLIERS:

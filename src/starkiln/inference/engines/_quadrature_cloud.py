@@ -8,9 +8,11 @@ T, A_V given both, and ln theta from its own conditional.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 
+from starkiln.inference._priors import Uniform
 from starkiln.inference.engines import _truncated
 from starkiln.inference.engines._quadrature_nodes import Nodes, Target, interpolated, legendre
 
@@ -109,15 +111,13 @@ class Mapping:
         )
         sd = np.exp(ln_sd)
         low, high = (prior.lower - mean) / sd, (prior.upper - mean) / sd
-        share = np.where(sd > _WEAK * prior.width, self._target.form.defence, 0.0)
+        share = np.where(sd > _WEAK * prior.sd, self._target.form.defence, 0.0)
         plain = u < share
         z, ln_density = _truncated.draw(np.maximum(u - share, 0.0) / (1.0 - share), low, high)
         av = np.clip(mean + sd * z, prior.lower, prior.upper)
         if not np.any(plain):
             return av, ln_density - ln_sd
-        edges = [(edge - prior.mean) / prior.width for edge in (prior.lower, prior.upper)]
-        z, _ = _truncated.draw(u[plain] / share[plain], *(np.full(plain.sum(), e) for e in edges))
-        av[plain] = np.clip(prior.mean + prior.width * z, prior.lower, prior.upper)
+        av[plain] = _from_prior(prior, u[plain] / share[plain])
         ln_density[plain] = _truncated.ln_density(
             (av - mean)[plain] / sd[plain], low[plain], high[plain]
         )
@@ -140,3 +140,14 @@ class Mapping:
         cumulative = np.concatenate([[0.0], np.cumsum(density[1:] + density[:-1])])
         scale = (x[-1] - x[0]) / (unit[-1] - unit[0])
         return np.interp(level, cumulative / cumulative[-1], x[0] + scale * (grid - unit[0]))
+
+
+def _from_prior(prior: Any, u: np.ndarray) -> np.ndarray:
+    """Return the points of a prior of A_V at levels u."""
+    if isinstance(prior, Uniform):
+        return prior.lower + (prior.upper - prior.lower) * u
+    low, high = (
+        np.full(u.size, (edge - prior.mean) / prior.width) for edge in (prior.lower, prior.upper)
+    )
+    z, _ = _truncated.draw(u, low, high)
+    return np.clip(prior.mean + prior.width * z, prior.lower, prior.upper)

@@ -15,6 +15,7 @@ from typing import Any, NamedTuple
 
 import numpy as np
 
+from starkiln.inference._priors import Uniform
 from starkiln.inference._problem import Problem
 from starkiln.inference.engines import _truncated
 from starkiln.inference.engines._quadrature_surface import Surface
@@ -40,6 +41,8 @@ _MOST_PASSES, _SETTLED = 6, 0.3
 _LONGEST = 3.0
 #: The last step is below this share of the conditional's width.
 _NEAR = 0.1
+#: Where neither data nor prior hold A_V its conditional is so many times its range wide.
+_FLAT = 30.0
 #: ln of the density of the misfit, below its largest, at which its range is cut.
 _MISFIT_DEPTH = 11.0
 
@@ -182,13 +185,16 @@ def evaluate(
         ln_like, _, _ = target.form.fit_av(value, np.zeros_like(value), f)
         return Nodes(t, ln_f, ln_weight, f, ln_like + ln_prior_t, av, np.ones(shape))
     mean = _first_av(prior, shape, t, ln_f, start)
+    centre, narrowness = _pull(prior)
     for _ in range(steps):
         av = np.clip(mean, prior.lower, prior.upper)
         value = target.surface.across(series, av)
         slope = target.surface.across(slopes, av)
         ln_like, score, information = target.form.fit_av(value, slope, f)
-        precision = information + 1.0 / prior.width**2
-        score = score + (prior.mean - av) / prior.width**2
+        precision = np.maximum(
+            information + narrowness, (_FLAT * (prior.upper - prior.lower)) ** -2
+        )
+        score = score + (centre - av) * narrowness
         mean = av + np.clip(score / precision, -_LONGEST, _LONGEST)
         ahead = np.clip(mean, prior.lower, prior.upper) - av
         if np.all(ahead * ahead * precision < _NEAR**2):
@@ -217,11 +223,18 @@ def interpolated(t: np.ndarray, values: np.ndarray) -> tuple[np.ndarray, np.ndar
     return np.append(x.ravel(), t[-1]), np.concatenate([fine, values[-1:]])
 
 
+def _pull(prior: Any) -> tuple[float, float]:
+    """Return the centre of a prior and its inverse variance, 0 where it is flat."""
+    if isinstance(prior, Uniform):
+        return 0.5 * (prior.lower + prior.upper), 0.0
+    return prior.mean, prior.width**-2
+
+
 def _first_av(
     prior: Any, shape: tuple[int, int], t: np.ndarray, ln_f: np.ndarray, start: Nodes | None
 ) -> np.ndarray:
     if start is None:
-        return np.full(shape, np.clip(prior.mean, 0.5, 0.5 * prior.upper))
+        return np.full(shape, np.clip(_pull(prior)[0], min(0.5, 0.5 * prior.upper), prior.upper))
     clipped = np.clip(start.av, prior.lower, prior.upper)
     columns = [np.interp(t, start.t, column) for column in clipped.T]
     nearest = np.abs(ln_f[:, None] - start.ln_misfit).argmin(axis=1) if ln_f.size > 1 else [0]
