@@ -33,6 +33,8 @@ _SHIFTS = 8
 AIM, TOLERANCE = 0.015, 0.03
 #: The smallest share of effective draws that is called converged.
 _SHARE = 0.1
+#: Below this share a larger lattice is not tried.
+_HOPELESS = 0.01
 _LEVELS = np.array([0.16, 0.5, 0.84])
 #: Half the step in level over which the density at a percentile is measured.
 _STEP = 0.04
@@ -82,7 +84,7 @@ def run_quadrature(
     mapping = Mapping(target, find_nodes(target, *nodes))
     for points in MULTIPLIERS:
         samples = _samples(mapping.cloud(shifted_lattices(rng, points, _SHIFTS)), problem, rng)
-        if samples.error <= aim:
+        if samples.error <= aim or samples.n_eff < _HOPELESS * len(samples.x):
             break
     return samples
 

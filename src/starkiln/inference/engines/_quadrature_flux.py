@@ -67,7 +67,8 @@ class FluxForm:
         centre, width = self._peak(value, f)
         gradient, information = self._derivatives(value + centre[:, None], f)
         one = np.ones_like(slope)
-        shared = self._inner(information, slope, one) / self._inner(information, one, one)
+        power = np.maximum(self._inner(information, one, one), 1e-12)
+        shared = self._inner(information, slope, one) / power
         # What all bands share is a change of theta, which is integrated out.
         slope = slope - shared[:, None]
         score = np.sum(gradient * slope, axis=1)
@@ -178,7 +179,8 @@ class FluxForm:
     def _derivatives(self, ln_scaled: np.ndarray, f: np.ndarray) -> tuple[np.ndarray, _Information]:
         """Return the derivatives of ln likelihood by ln model flux, and the information."""
         bands, n = self._bands, self._bands.n_detections
-        model = np.exp(np.minimum(ln_scaled, 150.0))
+        # Beyond e^60 errors a product of four fluxes leaves the range of doubles.
+        model = np.exp(np.minimum(ln_scaled, 60.0))
         seen, relative = model[:, :n], f[:, None] ** 2
         residual = bands.scaled_data[:n] - seen
         weight = 1.0 / (1.0 + relative * seen * seen)

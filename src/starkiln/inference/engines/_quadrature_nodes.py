@@ -277,4 +277,6 @@ def _spread(x: np.ndarray, density: np.ndarray, n: int) -> np.ndarray:
     cumulative, x = cumulative[held[0] : held[-1] + 2], x[held[0] : held[-1] + 2]
     # Gaps between modes keep a little, or the inverse would not be one.
     cumulative = cumulative + 1e-9 * cumulative[-1] * (x - x[0]) / (x[-1] - x[0])
-    return np.interp(np.linspace(cumulative[0], cumulative[-1], n), cumulative, x)
+    points = np.interp(np.linspace(cumulative[0], cumulative[-1], n), cumulative, x)
+    # A thousandth of even spacing, so that no two points are one.
+    return 0.999 * points + 0.001 * np.linspace(x[0], x[-1], n)
