@@ -61,9 +61,11 @@ def chances(levels):
 @pytest.mark.long
 @pytest.mark.parametrize("case", CASES)
 def test_ranks_of_the_truth_are_uniform(case: str) -> None:
-    levels, failed = ranks(CASES[case], CASES[case], 2000)
+    faint = case.startswith("faint")
+    levels, failed = ranks(CASES[case], CASES[case], 600 if faint else 2000)
     found = chances(levels)
-    assert failed < 0.01
+    # Stars that hardly any band sees may stay unconverged, and say so.
+    assert failed < (0.05 if faint else 0.002)
     assert min(found.values()) > SMALLEST_P, found
 
 
