@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import hashlib
 import json
 from collections.abc import Mapping
 from dataclasses import dataclass
@@ -26,6 +27,8 @@ _COOL_K = 4600.0
 _CO_K = 5200.0
 _HOT_K = 25000.0
 _THIN = 0.3
+#: Points beyond the models by no more than the rounding of single precision pass.
+_ROUNDING = 1e-6
 
 
 @dataclass(frozen=True)
@@ -35,6 +38,7 @@ class _Table:
     #: Spline coefficients of ln[radiance/B(T_eff)], (n_node, n_wave).
     coefficients: np.ndarray
     meta: Mapping[str, Any]
+    digest: str
 
 
 @lru_cache(maxsize=1)
@@ -50,7 +54,8 @@ def _table() -> _Table:
         ln_wavelength = np.log(file["wavelength_m"])
     coefficients = grid.prefilter(ln_ratio)
     coefficients.flags.writeable = False
-    return _Table(grid, ln_wavelength, coefficients, MappingProxyType(meta))
+    digest = hashlib.sha256(path.read_bytes()).hexdigest()
+    return _Table(grid, ln_wavelength, coefficients, MappingProxyType(meta), digest)
 
 
 @lru_cache(maxsize=1)
@@ -123,6 +128,11 @@ class AtmosphereEmitter:
         return _table().meta
 
     @property
+    def table_digest(self) -> str:
+        """SHA-256 of the table's file, for what is kept of it elsewhere."""
+        return _table().digest
+
+    @property
     def band_offsets(self) -> Mapping[str, tuple[float, float]]:
         """Observed minus model magnitude of some bands, and its error; not in `radiance`.
 
@@ -150,6 +160,33 @@ class AtmosphereEmitter:
             inside = inside & (np.asarray(value) >= low) & (np.asarray(value) <= high)
         return inside
 
+    def complete(self, *parameters: np.ndarray) -> tuple[np.ndarray, np.ndarray, np.ndarray]:
+        """Return temperature in K, log g and [Fe/H] at points of the free parameters.
+
+        Parameters
+        ----------
+        *parameters : numpy.ndarray, shape (n,)
+            The free ones, in the order of `parameters`.
+
+        Returns
+        -------
+        temperature, logg, feh : numpy.ndarray, shape (n,)
+
+        Raises
+        ------
+        InputError
+            A point outside the models by more than rounding.
+        """
+        free = dict(zip(self.parameters, parameters, strict=True))
+        temperature = np.asarray(free["temperature"], dtype=float)
+        given = {"logg": self.logg, "feh": self.feh}
+        logg, feh = (
+            np.broadcast_to(np.asarray(free.get(n, given[n]), dtype=float), temperature.shape)
+            for n in given
+        )
+        _check(temperature, logg, feh)
+        return temperature, logg, feh
+
     def radiance(self, wavelength_m: np.ndarray, *parameters: np.ndarray) -> np.ndarray:
         """Return the radiance averaged over the disc, surface flux over pi, in W m-3 sr-1.
 
@@ -169,8 +206,7 @@ class AtmosphereEmitter:
         InputError
             A point outside the models.
         """
-        temperature, logg, feh = self._filled(parameters)
-        _check(temperature, logg, feh)
+        temperature, logg, feh = self.complete(*parameters)
         table = _table()
         x = np.log(np.asarray(wavelength_m, dtype=float))
         position = np.clip(np.searchsorted(table.ln_wavelength, x), 1, table.ln_wavelength.size - 1)
@@ -201,19 +237,13 @@ class AtmosphereEmitter:
             notes.append("[Fe/H] is at the end of the models")
         return "; ".join(notes)
 
-    def _filled(self, parameters: tuple[np.ndarray, ...]) -> tuple[np.ndarray, ...]:
-        free = dict(zip(self.parameters, parameters, strict=True))
-        temperature = np.asarray(free["temperature"], dtype=float)
-        given = {"logg": self.logg, "feh": self.feh}
-        rest = (np.asarray(free.get(n, given[n]), dtype=float) for n in ("logg", "feh"))
-        return temperature, *(np.broadcast_to(value, temperature.shape) for value in rest)
-
 
 def _check(temperature: np.ndarray, logg: np.ndarray, feh: np.ndarray) -> None:
     values = {"temperature": temperature, "logg": logg, "feh": feh}
     units = {"temperature": " K", "logg": "", "feh": ""}
     for name, (low, high) in _box().items():
-        bad = ~((values[name] >= low) & (values[name] <= high))
+        slack = _ROUNDING * (low if name == "temperature" else 1.0)
+        bad = ~((values[name] >= low - slack) & (values[name] <= high + slack))
         if np.any(bad):
             why = f" ({_WHY})" if name == "temperature" else ""
             raise InputError(
@@ -221,7 +251,7 @@ def _check(temperature: np.ndarray, logg: np.ndarray, feh: np.ndarray) -> None:
                 f"atmospheres{why}: give {low:g} to {high:g}{units[name]}"
             )
     lowest = lowest_logg(temperature)
-    thin = logg < lowest - 1e-9
+    thin = logg < lowest - _ROUNDING
     if np.any(thin):
         raise InputError(
             f"logg = {logg[thin].flat[0]:.4g} at {temperature[thin].flat[0]:.6g} K is below "

@@ -8,6 +8,8 @@ one band to another follow from the same product.
 from starkiln.forward._build import AV_RANGE
 from starkiln.forward._cache import cache_folder
 from starkiln.forward._direct import band_flux_direct
+from starkiln.forward._door import band_fluxes, extrapolated_bands
+from starkiln.forward._node_table import NodeFluxTable
 from starkiln.forward._sources import (
     Source,
     convert_between,
@@ -15,11 +17,12 @@ from starkiln.forward._sources import (
     spectrum_source,
     star_source,
 )
-from starkiln.forward._table import BandFluxTable, band_fluxes, extrapolated_bands
+from starkiln.forward._table import BandFluxTable
 
 __all__ = [
     "AV_RANGE",
     "BandFluxTable",
+    "NodeFluxTable",
     "Source",
     "band_flux_direct",
     "band_fluxes",

@@ -7,17 +7,20 @@ with it or on its place among them.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 
 import numpy as np
 
 __all__ = [
     "at_point",
+    "chebyshev",
     "chebyshev_fit",
     "chebyshev_nodes",
+    "chebyshev_slope",
     "contract",
     "evaluate",
     "evaluate_slope",
+    "over_nodes",
     "trimmed",
 ]
 
@@ -36,13 +39,14 @@ def chebyshev_nodes(n: int) -> np.ndarray:
     return np.cos(np.pi * (np.arange(n) + 0.5) / n)
 
 
-def chebyshev_fit(values: np.ndarray) -> np.ndarray:
+def chebyshev_fit(values: np.ndarray, axes: Iterable[int] | None = None) -> np.ndarray:
     """Return the coefficients of the interpolant through values at Chebyshev points.
 
-    `values` stands on `chebyshev_nodes` along every axis (Press et al. 2007,
-    Numerical Recipes, eq. 5.8.7, along each axis in turn).
+    `values` stands on `chebyshev_nodes` along the `axes`, by default every one (Press
+    et al. 2007, Numerical Recipes, eq. 5.8.7, along each axis in turn).
     """
-    for axis, n in enumerate(values.shape):
+    for axis in range(values.ndim) if axes is None else axes:
+        n = values.shape[axis]
         order = np.arange(n)
         matrix = 2.0 / n * np.cos(np.pi * np.outer(order, order + 0.5) / n)
         matrix[0] *= 0.5
@@ -62,6 +66,28 @@ def trimmed(coefficients: np.ndarray, tolerance: float) -> np.ndarray:
     return np.ascontiguousarray(coefficients)
 
 
+def over_nodes(coefficients: np.ndarray, index: np.ndarray, weight: np.ndarray) -> np.ndarray:
+    """Return the weighted sums of rows of `coefficients`.
+
+    Parameters
+    ----------
+    coefficients : numpy.ndarray, shape (n_node, m)
+    index, weight : numpy.ndarray, shape (n, k)
+        Rows of each point's sum, and their weights.
+
+    Returns
+    -------
+    numpy.ndarray, shape (n, m)
+    """
+    total = np.empty((len(index), coefficients.shape[1]))
+    chunk = max(1, _WORKSPACE // (index.shape[1] * coefficients.shape[1]))
+    for start in range(0, len(index), chunk):
+        part = slice(start, start + chunk)
+        # One product per point, so that its shape is fixed.
+        total[part] = np.matmul(weight[part, None, :], coefficients[index[part]])[:, 0]
+    return total
+
+
 def evaluate(coefficients: np.ndarray, t: np.ndarray, a: np.ndarray) -> np.ndarray:
     """Sum a set of double Chebyshev series.
 
@@ -78,7 +104,7 @@ def evaluate(coefficients: np.ndarray, t: np.ndarray, a: np.ndarray) -> np.ndarr
     """
     value = np.empty((t.size, coefficients.shape[2]))
     for part, series in _series(coefficients, t):
-        value[part] = _sum(_chebyshev(_padded(a[part]), coefficients.shape[1]), series, part)
+        value[part] = _sum(chebyshev(_padded(a[part]), coefficients.shape[1]), series, part)
     return value
 
 
@@ -90,20 +116,20 @@ def evaluate_slope(
     slope = np.empty_like(value)
     for part, series in _series(coefficients, t):
         points = _padded(a[part])
-        value[part] = _sum(_chebyshev(points, coefficients.shape[1]), series, part)
-        slope[part] = _sum(_chebyshev_slope(points, coefficients.shape[1]), series, part)
+        value[part] = _sum(chebyshev(points, coefficients.shape[1]), series, part)
+        slope[part] = _sum(chebyshev_slope(points, coefficients.shape[1]), series, part)
     return value, slope
 
 
 def contract(series: np.ndarray, r: np.ndarray, n_r: int) -> np.ndarray:
     """Sum series of shape (n, n_r m) over their n_r terms at the points r, shape (n,)."""
-    basis = _chebyshev(r, n_r)
+    basis = chebyshev(r, n_r)
     return np.einsum("nj,njb->nb", basis, series.reshape(r.size, n_r, -1))
 
 
 def at_point(coefficients: np.ndarray, r: float) -> np.ndarray:
     """Sum a series over its last axis at one point, which leaves one of fewer axes."""
-    return coefficients @ _chebyshev(np.array([r]), coefficients.shape[-1])[0]
+    return coefficients @ chebyshev(np.array([r]), coefficients.shape[-1])[0]
 
 
 def _series(coefficients: np.ndarray, t: np.ndarray) -> Iterator[tuple[slice, np.ndarray]]:
@@ -115,7 +141,7 @@ def _series(coefficients: np.ndarray, t: np.ndarray) -> Iterator[tuple[slice, np
     chunk = BLOCK * max(1, _WORKSPACE // (BLOCK * n_a * m))
     for start in range(0, t.size, chunk):
         part = slice(start, min(start + chunk, t.size))
-        basis = _chebyshev(_padded(t[part]), n_t).reshape(-1, BLOCK, n_t)
+        basis = chebyshev(_padded(t[part]), n_t).reshape(-1, BLOCK, n_t)
         sums = [np.matmul(basis, piece) for piece in pieces]
         yield part, np.concatenate(sums, axis=-1).reshape(-1, n_a, m)
 
@@ -128,7 +154,7 @@ def _padded(x: np.ndarray) -> np.ndarray:
     return np.pad(x, (0, -x.size % BLOCK), mode="edge")
 
 
-def _chebyshev(x: np.ndarray, n: int) -> np.ndarray:
+def chebyshev(x: np.ndarray, n: int) -> np.ndarray:
     """Return T_0 .. T_(n-1) at x, shape (x.size, n), by T_(k+1) = 2 x T_k - T_(k-1)."""
     basis = np.empty((n, x.size))
     basis[0], basis[1] = 1.0, x
@@ -139,7 +165,7 @@ def _chebyshev(x: np.ndarray, n: int) -> np.ndarray:
     return np.ascontiguousarray(basis.T)
 
 
-def _chebyshev_slope(x: np.ndarray, n: int) -> np.ndarray:
+def chebyshev_slope(x: np.ndarray, n: int) -> np.ndarray:
     """Return the derivatives of T_0 .. T_(n-1): T_k' = k U_(k-1), U_(k+1) = 2 x U_k - U_(k-1)."""
     second = np.zeros((n, x.size))
     second[1] = 1.0

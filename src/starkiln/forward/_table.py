@@ -7,14 +7,11 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from starkiln.dust import Dust
-from starkiln.emitters import Emitter
 from starkiln.errors import InputError
-from starkiln.forward._build import AV_RANGE, band_coefficients, ln_temperature_range, rv_range
+from starkiln.forward._build import AV_RANGE
 from starkiln.forward._kernels import contract, evaluate, evaluate_slope
-from starkiln.passbands import Band, load_band
 
-__all__ = ["BandFluxTable", "band_fluxes", "extrapolated_bands"]
+__all__ = ["BandFluxTable", "stacked_coefficients", "to_unit"]
 
 
 @dataclass(frozen=True, eq=False)
@@ -92,68 +89,34 @@ class BandFluxTable:
             raise InputError(
                 f"x must have shape (n, 1) and av shape (n,), not {x.shape} and {av.shape}"
             )
-        t = _to_unit(x[:, 0], self.ln_temperature, "ln of the temperature in K")
-        a = _to_unit(av, AV_RANGE, "av in mag")
+        t = to_unit(x[:, 0], self.ln_temperature, "ln of the temperature in K")
+        a = to_unit(av, AV_RANGE, "av in mag")
         if self.rv_range is None:
             if rv is not None:
                 raise InputError("this table has a fixed R_V: make it with free_rv=True")
             return t, a, None
         if rv is None or np.shape(rv) != av.shape:
             raise InputError(f"this table has a free R_V: give rv of shape {av.shape}")
-        return t, a, _to_unit(np.asarray(rv, dtype=float), self.rv_range, "R_V")
+        return t, a, to_unit(np.asarray(rv, dtype=float), self.rv_range, "R_V")
 
 
-def band_fluxes(
-    emitter: Emitter, bands: Sequence[str | Band], dust: Dust, *, free_rv: bool = False
-) -> BandFluxTable:
-    """Return the table of band fluxes, building what is not in memory or cache yet.
+def stacked_coefficients(per_band: Sequence[np.ndarray]) -> np.ndarray:
+    """Return the series of several bands in one array, the bands on a last axis.
 
-    Parameters
-    ----------
-    emitter : Emitter
-        The surface; one of one parameter.
-    bands : sequence of str or Band
-        Bands, or their names.
-    dust : Dust
-        Law and R_V; its prior does not matter here. An R_V other than 3.1 makes the
-        table of all R_V once (some seconds, kept on disk), and every R_V then costs
-        nothing.
-    free_rv : bool
-        Whether R_V is an argument of the table, over the law's whole range.
-
-    Returns
-    -------
-    BandFluxTable
-        From direct integration by less than 1e-5 in ln flux, over the emitter's
-        range of temperature and av of 0 to 10 mag.
-
-    Raises
-    ------
-    BandError, DustError
-        A band is unknown, the law does not reach it, or it has no free R_V.
+    Series that are shorter than others along an axis are filled up with zeros.
     """
-    loaded = [load_band(band) if isinstance(band, str) else band for band in bands]
-    per_band = [band_coefficients(emitter, band, dust, free_rv=free_rv) for band in loaded]
-    n_axes = 3 if free_rv else 2
-    shape = np.max([c.shape for c in per_band], axis=0) if per_band else np.full(n_axes, 2)
-    stacked = np.zeros((*shape, len(loaded)))
+    if not per_band:
+        return np.zeros((2, 2, 0))
+    shape = np.max([c.shape for c in per_band], axis=0)
+    stacked = np.zeros((*shape, len(per_band)))
     for k, own in enumerate(per_band):
         corner = tuple(slice(n) for n in own.shape)
         stacked[..., k][corner] = own
-    return BandFluxTable(
-        tuple(band.name for band in loaded),
-        ln_temperature_range(emitter),
-        stacked.reshape(shape[0], shape[1], -1),
-        rv_range(dust) if free_rv else None,
-    )
+    return stacked
 
 
-def extrapolated_bands(bands: Sequence[str], dust: Dust) -> tuple[str, ...]:
-    """Return those of the bands that reach beyond the dust law's published range."""
-    return tuple(b for b in bands if np.any(dust.extrapolated(load_band(b).wavelength_m)))
-
-
-def _to_unit(value: np.ndarray, bounds: tuple[float, float], what: str) -> np.ndarray:
+def to_unit(value: np.ndarray, bounds: tuple[float, float], what: str) -> np.ndarray:
+    """Return `value` scaled from its bounds to [-1, 1]; refuse one outside them."""
     low, high = bounds
     if value.size and not (value.min() >= low and value.max() <= high):
         bad = value[~((value >= low) & (value <= high))][0]
