@@ -12,6 +12,7 @@ import pytest
 import starkiln
 
 PUBLIC = {
+    "AtmosphereEmitter",
     "Band",
     "BlackbodyEmitter",
     "Dust",

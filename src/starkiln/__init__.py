@@ -18,6 +18,7 @@ _PUBLIC = {
     "fit": "starkiln.runner",
     "FitResult": "starkiln.runner",
     "fit_catalogue": "starkiln.runner",
+    "AtmosphereEmitter": "starkiln.emitters",
     "BlackbodyEmitter": "starkiln.emitters",
     "Dust": "starkiln.dust",
     "Band": "starkiln.passbands",
@@ -27,6 +28,7 @@ _PUBLIC = {
 }
 
 __all__ = [
+    "AtmosphereEmitter",
     "Band",
     "BlackbodyEmitter",
     "Dust",

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 from astropy.table import Table
 
+from starkiln.emitters import BlackbodyEmitter
 from starkiln.inference import Settings
 from starkiln.passbands import load_band
 
@@ -101,6 +102,10 @@ class FakeRun:
     @property
     def settings(self):
         return Settings()
+
+    @property
+    def emitter(self):
+        return BlackbodyEmitter()
 
     def rows_of(self, name):
         return [row for row, known in enumerate(self.names, start=1) if known == name]

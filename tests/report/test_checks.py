@@ -7,6 +7,7 @@ import pytest
 from tests.report.drawn import drawn_texts, outside, overlapping
 from tests.report.fake_run import FakeRun
 
+from starkiln.emitters import BlackbodyEmitter
 from starkiln.errors import InputError
 from starkiln.inference import Settings
 from starkiln.report import (
@@ -50,7 +51,7 @@ def test_prior_figure_names_every_quantity(view, monkeypatch):
 def test_prior_densities_integrate_to_one():
     """Each density is a density in the quantity that is drawn, not in its logarithm."""
     for settings in (Settings(), Settings(dust="free")):
-        for key, density in priors_of_settings(settings).items():
+        for key, density in priors_of_settings(settings, BlackbodyEmitter()).items():
             grid = np.geomspace(*((1e3, 1e5) if key == "temperature" else (1e-7, 200.0)), 200001)
             assert np.trapezoid(density(grid), grid) == pytest.approx(1.0, abs=2e-3)
 

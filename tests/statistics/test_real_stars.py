@@ -1,8 +1,9 @@
-"""What a blackbody makes of real stars: held against interferometry and the solar spectrum.
+"""What an emitter makes of real stars: held against interferometry and the solar spectrum.
 
-Outside checks: Soubiran et al. 2024 (tests/reference/interferometric_stars.csv), and
-ASTM E490 (tests/reference/solar_spectrum.ecsv). The bounds are a blackbody's limits,
-stated in the README, not the code's precision.
+Outside checks: Soubiran et al. 2024 (tests/reference/interferometric_stars.csv, and
+fundamental_stars.ecsv with gravities and metallicities), and ASTM E490
+(tests/reference/solar_spectrum.ecsv). The bounds are a blackbody's and an atmosphere's
+limits, stated in the README, not the code's precision.
 """
 
 from __future__ import annotations
@@ -14,6 +15,7 @@ import numpy as np
 import pytest
 from astropy import units as u
 from astropy.table import Table
+from scipy.stats import median_abs_deviation
 
 from starkiln import Star, fit, load_band
 from starkiln.inference import Settings
@@ -112,3 +114,54 @@ def test_sunlight_is_no_blackbody():
     assert "poor_blackbody" in result.flags
     assert result.fit_probability < 1e-3
     assert result.summary["misfit"][1] > 0.02
+
+
+def known_stars(half):
+    table = Table.read(REFERENCE / "fundamental_stars.ecsv")
+    return table[(table["half"] == half) & (table["teff"] > 4300.0) & (table["teff"] < 7000.0)]
+
+
+def known_star(row):
+    photometry = {}
+    for band in COLUMNS:
+        column = band.replace(" ", "_")
+        if np.isfinite(row[column]):
+            error = row[f"e_{column}"] if f"e_{column}" in row.colnames else GAIA_ERROR
+            # 0.3 mag stands for a magnitude whose catalogue gives no error.
+            error = float(error) if np.isfinite(error) else 0.3
+            photometry[band] = (float(row[column]), error)
+    known = {"logg": float(row["logg"]), "feh": max(float(row["feh"]), -2.5)}
+    return Star(str(row["name"]), photometry, **known)
+
+
+def compare_known(table, emitter):
+    """Ratios less 1, in per cent, and whether the intervals hold, of T and theta."""
+    off, held = [], []
+    for row in table:
+        result = fit(known_star(row), emitter=emitter, settings=Settings(dust="zero"))
+        for name, key in (("temperature", "teff"), ("angular_diameter", "theta")):
+            middle, low, high = result.summary[name]
+            off.append(100.0 * (middle / row[key] - 1.0))
+            held.append(abs(middle - row[key]) < np.hypot(0.5 * (high - low), row[f"e_{key}"]))
+    return np.reshape(off, (-1, 2)).T, np.reshape(held, (-1, 2)).T
+
+
+def test_an_atmosphere_comes_closer_in_temperature_than_a_blackbody():
+    table = known_stars("test")[::5]
+    (ours, _), _ = compare_known(table, "atmosphere")
+    (blackbody, _), _ = compare_known(table, "blackbody")
+    assert np.sqrt(np.mean(ours**2)) < 0.8 * np.sqrt(np.mean(blackbody**2))
+    assert np.max(np.abs(ours)) < 6.0
+
+
+@pytest.mark.long
+def test_an_atmosphere_on_the_half_that_calibrated_nothing():
+    table = known_stars("test")
+    off, held = compare_known(table, "atmosphere")
+    blackbody, _ = compare_known(table, "blackbody")
+    bias, scatter = np.median(off, axis=1), median_abs_deviation(off, axis=1, scale="normal")
+    assert np.all(np.abs(bias) < (1.5, 3.0))
+    assert np.all(scatter < (2.3, 4.0))
+    assert np.all((held.mean(axis=1) > 0.55) & (held.mean(axis=1) < 0.8))
+    # A blackbody: +2.7 and -4.9 per cent.
+    assert np.all(np.abs(bias) < 0.6 * np.abs(np.median(blackbody, axis=1)))

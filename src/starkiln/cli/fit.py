@@ -47,7 +47,11 @@ def configure(parser: argparse.ArgumentParser) -> None:
         help="priors, dust, likelihood, zero points, distance, sampling; keys below",
     )
     parser.add_argument(
-        "--emitter", default="blackbody", metavar="NAME", help="blackbody (default)"
+        "--emitter",
+        default="blackbody",
+        metavar="NAME",
+        help="blackbody (default), or atmosphere: model atmospheres of 4,200 to 40,000 K in "
+        "temperature, logg and feh, the last two from the row's columns where it has them",
     )
     parser.add_argument(
         "--engine",
@@ -98,7 +102,7 @@ def run(args: argparse.Namespace) -> int:
     keep = args.draws is not None or len(catalogue) <= MOST_ROWS_WITH_DRAWS
     recipe = Recipe(args.emitter, args.engine, settings, args.seed, keep and settings.draws > 0)
     if not args.quiet:
-        _tell(catalogue, describe_priors(settings))
+        _tell(catalogue, describe_priors(settings, args.emitter))
         _foretell(estimate(catalogue, args.run, recipe, args.workers))
     meter = _Meter(not args.quiet and sys.stderr.isatty())
     try:

@@ -100,10 +100,13 @@ def quantities_of(
     for name in problem.names:
         if name in QUANTITIES and name not in draws:
             draws[name] = problem.column(x, name)
+    for name, value in getattr(problem.emitter, "given", {}).items():
+        # Fixed, but this star's own: told beside the others'.
+        draws[name] = np.full(len(x), value)
     if problem.star.rv is not None and "rv" not in draws:
         # Fixed, but this star's own: told beside the others' default.
         draws["rv"] = np.full(len(x), problem.star.rv)
-    return draws
+    return {name: draws[name] for name in QUANTITIES if name in draws}
 
 
 def interval(draws: np.ndarray) -> tuple[float, float, float]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import hashlib
 import json
-from collections.abc import Mapping
+from collections.abc import Container, Mapping
 from dataclasses import dataclass
 from functools import lru_cache
 from types import MappingProxyType
@@ -95,9 +95,9 @@ class AtmosphereEmitter:
 
     def __post_init__(self) -> None:
         box = _box()
-        for name, value in (("logg", self.logg), ("feh", self.feh)):
+        for name, value in self.given.items():
             low, high = box[name]
-            if value is not None and not low <= value <= high:
+            if not low <= value <= high:
                 raise InputError(
                     f"{name} = {value:g} is outside the model atmospheres: give {low:g} to {high:g}"
                 )
@@ -110,8 +110,19 @@ class AtmosphereEmitter:
     @property
     def parameters(self) -> tuple[str, ...]:
         """Names of the free parameters."""
-        given = {"logg": self.logg, "feh": self.feh}
-        return tuple(name for name in _box() if given.get(name) is None)
+        return tuple(name for name in _box() if name not in self.given)
+
+    @property
+    def given(self) -> Mapping[str, float]:
+        """Those of log g and [Fe/H] that are held, by name."""
+        held = {"logg": self.logg, "feh": self.feh}
+        return MappingProxyType({n: value for n, value in held.items() if value is not None})
+
+    @property
+    def limits(self) -> str:
+        """Where the models end, and why, in words."""
+        low, high = _box()["temperature"]
+        return f"the model atmospheres reach from {low:g} to {high:g} K: {_WHY}"
 
     @property
     def bounds(self) -> Mapping[str, tuple[float, float]]:
@@ -179,10 +190,10 @@ class AtmosphereEmitter:
         """
         free = dict(zip(self.parameters, parameters, strict=True))
         temperature = np.asarray(free["temperature"], dtype=float)
-        given = {"logg": self.logg, "feh": self.feh}
+        known = {**self.given, **free}
         logg, feh = (
-            np.broadcast_to(np.asarray(free.get(n, given[n]), dtype=float), temperature.shape)
-            for n in given
+            np.broadcast_to(np.asarray(known[n], dtype=float), temperature.shape)
+            for n in ("logg", "feh")
         )
         _check(temperature, logg, feh)
         return temperature, logg, feh
@@ -221,12 +232,22 @@ class AtmosphereEmitter:
         ratio = (1.0 - share) * near[:, position - 1] + share * near[:, position]
         return np.exp(ratio) * planck_wavelength(wavelength_m, temperature[:, None])
 
-    def note(self, temperature: float, logg: float, feh: float) -> str:
-        """Return what to be wary of at a point, for a result's message; empty if nothing."""
+    def note(
+        self, temperature: float, logg: float, feh: float, bands: Container[str] = ("WISE W2",)
+    ) -> str:
+        """Return what to be wary of at a point, for a result's message; empty if nothing.
+
+        Parameters
+        ----------
+        temperature, logg, feh : float
+            The point, such as a posterior's medians.
+        bands : container of str
+            Names of the bands in use.
+        """
         notes = []
         if temperature < _COOL_K:
             notes.append(f"below {_COOL_K:g} K bands of molecules, left out here, begin to tell")
-        if temperature < _CO_K:
+        if temperature < _CO_K and "WISE W2" in bands:
             notes.append("WISE W2 holds bands of CO, left out here: by 0.1 to 0.3 mag in K stars")
         if temperature > _HOT_K:
             notes.append(f"above {_HOT_K:g} K winds and departures from LTE begin to tell")

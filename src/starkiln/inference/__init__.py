@@ -7,8 +7,8 @@ from starkiln.inference._distance import (
     from_distance,
     from_parallax,
 )
-from starkiln.inference._priors import Prior, TruncatedNormal, Uniform
-from starkiln.inference._problem import Parameter, Problem, build_problem
+from starkiln.inference._priors import Parameter, Prior, TruncatedNormal, Uniform
+from starkiln.inference._problem import Problem, build_problem
 from starkiln.inference._samples import Samples
 from starkiln.inference._settings import Settings, describe_settings, read_settings
 from starkiln.inference.engines import ENGINES

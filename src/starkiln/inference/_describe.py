@@ -2,12 +2,20 @@
 
 from __future__ import annotations
 
+from starkiln.inference._band_offsets import ORIGIN
 from starkiln.inference._distance import describe_prior
 from starkiln.inference._settings import Settings
 
 
-def describe_priors(settings: Settings) -> dict[str, str]:
-    """Return each parameter's prior and the likelihood in words, by name."""
+def describe_priors(settings: Settings, emitter: str = "blackbody") -> dict[str, str]:
+    """Return each parameter's prior and the likelihood in words, by name.
+
+    Parameters
+    ----------
+    settings : Settings
+    emitter : str
+        Name of the emitter, whose parameters are told.
+    """
     low, high = settings.temperature_range
     temperature = f"log-uniform, {low:g} to {high:g} K"
     if settings.use_published_temperature:
@@ -30,8 +38,17 @@ def describe_priors(settings: Settings) -> dict[str, str]:
             else "Gaussian in flux"
         ),
     }
+    if emitter == "atmosphere":
+        lines["temperature"] += "; cut where the models end"
+        low, high = settings.logg_range
+        lines["logg"] = f"the row's logg +- e_logg (Gaussian), else uniform, {low:g} to {high:g}"
+        lines["feh"] = (
+            f"the row's feh +- e_feh (Gaussian), else {settings.feh_mean:g} +- "
+            f"{settings.feh_width:g} (Gaussian); both cut where the models end"
+        )
+        lines["band_offsets"] = ORIGIN if settings.atmosphere_offsets else "none"
     if settings.misfit:
-        small, large = settings.misfit_range
+        small, large = settings.misfit_range_of(emitter)
         lines["misfit"] = f"log-uniform, {small:g} to {large:g} of the flux, every band"
     return lines
 

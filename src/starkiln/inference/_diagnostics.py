@@ -24,6 +24,10 @@ EDGE_WIDTH, EDGE_SHARE = 0.01, 0.02
 _FREE = ("free", "gaussian", "uniform")
 #: `few_bands` below this number of usable bands.
 FEW = 3
+#: Parameters whose Gaussian prior is knowledge of the star, which the predictive check keeps.
+_PULLED = ("av", "logg", "feh")
+#: Parameters that photometry may leave as wide as their prior, whose ends then mean nothing.
+_LOOSE = ("logg", "feh")
 #: Step of the numerical derivatives, in ln T, ln theta and mag.
 _STEP = 1e-6
 
@@ -122,7 +126,7 @@ def _smallest_chi2(problem: Problem, samples: Samples, whiten: Any, columns: lis
     def residuals(values: np.ndarray) -> np.ndarray:
         x = np.repeat(best[None], len(values), axis=0)
         x[:, columns] = values
-        return np.column_stack([whiten(problem.ln_model(x)), _dust_pull(problem, x)])
+        return np.column_stack([whiten(problem.ln_model(x)), _prior_pull(problem, x)])
 
     def slopes(values: np.ndarray) -> np.ndarray:
         # All steps at once: a call of the model costs as much for one point as for 64.
@@ -143,13 +147,16 @@ def _smallest_chi2(problem: Problem, samples: Samples, whiten: Any, columns: lis
     return float(np.sum(solution.fun[:n] ** 2))
 
 
-def _dust_pull(problem: Problem, x: np.ndarray) -> np.ndarray:
-    """Return the pull of a Gaussian prior on A_V as one more residual, (m, 1) or (m, 0)."""
-    if "av" not in problem.names:
-        return np.empty((len(x), 0))
-    prior = problem.parameters[problem.names.index("av")].prior
-    value = problem.column(x, "av")
-    return ((value - getattr(prior, "mean", value)) / getattr(prior, "width", AV_MAX))[:, None]
+def _prior_pull(problem: Problem, x: np.ndarray) -> np.ndarray:
+    """Return the pulls of the Gaussian priors on A_V, log g and [Fe/H] as more residuals."""
+    pulls = [np.empty((len(x), 0))]
+    for name in _PULLED:
+        if name in problem.names:
+            prior = problem.parameters[problem.names.index(name)].prior
+            value = problem.column(x, name)
+            width = getattr(prior, "width", AV_MAX)
+            pulls.append(((value - getattr(prior, "mean", value)) / width)[:, None])
+    return np.hstack(pulls)
 
 
 def _wide(problem: Problem, samples: Samples, name: str) -> bool:
@@ -161,6 +168,8 @@ def _wide(problem: Problem, samples: Samples, name: str) -> bool:
 
 def _at_edge(problem: Problem, samples: Samples, name: str) -> bool:
     low, high = problem.bounds[problem.names.index(name)]
+    if name in _LOOSE and _wide(problem, samples, name):
+        return False
     if name == "av" or name == "ln_misfit":
         # A_V = 0 and the smallest misfit are natural ends; only the upper one is a limit.
         low = -np.inf

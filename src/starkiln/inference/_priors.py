@@ -35,6 +35,22 @@ class Prior(Protocol):
 
 
 @dataclass(frozen=True)
+class Parameter:
+    """One dimension that an engine explores.
+
+    Attributes
+    ----------
+    name : str
+        `ln_temperature` (K), `ln_diameter` (mas), `av` (mag), `ln_misfit`, or a
+        further parameter of the emitter by its own name.
+    prior : Prior
+    """
+
+    name: str
+    prior: Prior
+
+
+@dataclass(frozen=True)
 class Uniform:
     """Constant between `lower` and `upper`."""
 

@@ -13,7 +13,9 @@ from starkiln.constants import MAS_RAD
 from starkiln.errors import InputError
 from starkiln.forward import band_fluxes
 from starkiln.inference import _kernels
-from starkiln.inference._priors import Prior, TruncatedNormal, Uniform
+from starkiln.inference._band_offsets import emitter_offsets
+from starkiln.inference._emitter_priors import emitter_parameters
+from starkiln.inference._priors import Parameter, Prior, TruncatedNormal, Uniform
 from starkiln.inference._settings import Settings
 from starkiln.observations import Measurement, Star
 from starkiln.passbands import load_band
@@ -24,22 +26,6 @@ MAG = 0.4 * math.log(10.0)
 AV_MAX = 10.0
 #: ln of pi/4 theta^2 for theta of one milliarcsecond.
 LN_SOLID_ANGLE = math.log(math.pi / 4.0) + 2.0 * math.log(MAS_RAD.value)
-
-
-@dataclass(frozen=True)
-class Parameter:
-    """One dimension that an engine explores.
-
-    Attributes
-    ----------
-    name : str
-        `ln_temperature` (K), `ln_diameter` (mas), `av` (mag), `ln_misfit`, or a
-        further parameter of the emitter by its own name.
-    prior : Prior
-    """
-
-    name: str
-    prior: Prior
 
 
 @dataclass(frozen=True)
@@ -121,17 +107,47 @@ class Problem:
 
     def draw_prior(self, rng: np.random.Generator, n: int) -> np.ndarray:
         """Return `n` draws from the prior, shape (n, n_parameters)."""
-        return np.column_stack([item.prior.draw(rng, n) for item in self.parameters])
+        x = np.column_stack([item.prior.draw(rng, n) for item in self.parameters])
+        while not np.all(good := self.reached(x)):
+            count = n - int(good.sum())
+            x[~good] = np.column_stack([p.prior.draw(rng, count) for p in self.parameters])
+        return x
+
+    def reached(self, x: np.ndarray) -> np.ndarray:
+        """Return where the emitter's models reach, shape (n,).
+
+        Within the bounds that is everywhere, but for a free log g below the lowest that
+        the models have at the temperature.
+        """
+        if "logg" not in self.names:
+            return np.ones(len(x), dtype=bool)
+        return self.column(x, "logg") >= self._lowest_logg(x)
+
+    def _lowest_logg(self, x: np.ndarray) -> np.ndarray:
+        return self.emitter.lowest_logg(np.exp(self.column(x, "ln_temperature")))
 
     def ln_prior(self, x: np.ndarray) -> np.ndarray:
-        """Return ln of the prior density at `x`, shape (n, n_parameters) -> (n,)."""
-        return np.sum(
+        """Return ln of the prior density at `x`, shape (n, n_parameters) -> (n,).
+
+        Where the models end within the bounds it is -inf beyond, and not normalised anew.
+        """
+        total = np.sum(
             [item.prior.ln_density(x[:, i]) for i, item in enumerate(self.parameters)], axis=0
         )
+        return np.where(self.reached(x), total, -np.inf) if "logg" in self.names else total
 
     def ln_model(self, x: np.ndarray) -> np.ndarray:
-        """Return ln of the band fluxes in W m-3 at `x`, shape (n, n_bands)."""
+        """Return ln of the band fluxes in W m-3 at `x`, shape (n, n_bands).
+
+        Where the emitter's models do not reach, at the lowest log g that they do: the
+        prior excludes such a point, whatever the value.
+        """
         shape = len(self.emitter.parameters)
+        if "logg" in self.names:
+            x = x.copy()
+            x[:, self.names.index("logg")] = np.maximum(
+                self.column(x, "logg"), self._lowest_logg(x)
+            )
         free = [self.column(x, "rv")] if "rv" in self.names else []
         ln_flux = self.table.ln_flux(x[:, :shape], self.av(x), *free)
         ln_flux += (LN_SOLID_ANGLE + 2.0 * self.column(x, "ln_diameter"))[:, None]
@@ -215,7 +231,7 @@ def build_problem(star: Star, emitter: Any, dust: Any, settings: Settings) -> Pr
     notes: list[str] = []
     form = _choose_form(detections, limits, settings, notes)
     fixed_av, av_prior = _dust_of(star, dust, notes)
-    parameters = _emitter_parameters(star, emitter, settings, notes)
+    emitter, parameters = emitter_parameters(star, emitter, settings, notes)
     low, high = settings.diameter_range
     parameters.append(Parameter("ln_diameter", Uniform(math.log(low), math.log(high))))
     dust = dust if star.rv is None else replace(dust, rv=star.rv)
@@ -224,14 +240,14 @@ def build_problem(star: Star, emitter: Any, dust: Any, settings: Settings) -> Pr
         if settings.dust_rv_error:
             parameters.append(Parameter("rv", _rv_prior(dust, settings.dust_rv_error)))
     if settings.misfit:
-        low, high = settings.misfit_range
+        low, high = settings.misfit_range_of(emitter.name)
         parameters.append(Parameter("ln_misfit", Uniform(math.log(low), math.log(high))))
     return Problem(
         star=star,
         emitter=emitter,
         dust=dust,
         settings=settings,
-        bands=_bands(detections, limits, settings),
+        bands=_bands(detections, limits, emitter, settings),
         parameters=tuple(parameters),
         form=form,
         fixed_av=fixed_av,
@@ -293,38 +309,22 @@ def _rv_prior(dust: Any, width: float) -> Prior:
     return TruncatedNormal(dust.rv, width, *dust.rv_range)
 
 
-def _emitter_parameters(
-    star: Star, emitter: Any, settings: Settings, notes: list[str]
-) -> list[Parameter]:
-    low, high = settings.temperature_range
-    prior: Prior = Uniform(math.log(low), math.log(high))
-    if settings.use_published_temperature and star.teff_k is not None:
-        if not star.e_teff_k:
-            raise InputError(
-                "teff without e_teff cannot serve as prior; give its error or set "
-                "priors.published_temperature = false"
-            )
-        if not low <= star.teff_k <= high:
-            raise InputError(
-                f"teff = {star.teff_k:g} K lies outside the temperature prior, "
-                f"{low:g} to {high:g} K; widen priors.temperature"
-            )
-        notes.append(f"temperature prior {star.teff_k:g} +- {star.e_teff_k:g} K (teff)")
-        width = star.e_teff_k / star.teff_k
-        prior = TruncatedNormal(math.log(star.teff_k), width, math.log(low), math.log(high))
-    return [Parameter("ln_temperature", prior)]
-
-
-def _bands(detections: list[Measurement], limits: list[Measurement], settings: Settings) -> Bands:
+def _bands(
+    detections: list[Measurement], limits: list[Measurement], emitter: Any, settings: Settings
+) -> Bands:
     used = detections + limits
     bands = [load_band(item.band) for item in used]
     own = np.array([band.zero_point_error_mag * MAG for band in bands])
     own *= settings.system_offsets
-    flux = np.array([item.flux_w_m3 for item in used])
+    offset_mag, offset_error_mag = emitter_offsets(emitter, used, settings)
+    own = np.hypot(own, offset_error_mag * MAG)
+    # Data are brought to the model's scale.
+    scale = np.exp(offset_mag * MAG)
+    flux = np.array([item.flux_w_m3 for item in used]) * scale
     relative = np.array([item.fractional_error for item in detections])
     # A band's own zero-point error is independent of the others', so it adds to the
     # quoted error; the part that a system shares enters as its offset.
-    error = np.array([item.error_w_m3 for item in used])
+    error = np.array([item.error_w_m3 for item in used]) * scale
     error = np.hypot(error, own * np.abs(flux))
     n = len(detections)
     systems = list(dict.fromkeys(band.system for band in bands))

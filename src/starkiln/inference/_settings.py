@@ -6,7 +6,6 @@ each value and what `run.json` records are all read off its fields.
 
 from __future__ import annotations
 
-import math
 import textwrap
 import tomllib
 from collections.abc import Mapping
@@ -16,6 +15,7 @@ from pathlib import Path
 from typing import Any
 
 from starkiln.errors import SettingsError
+from starkiln.inference._setting_values import checked, toml
 
 
 def _setting(default: Any, key: str, text: str, **bounds: Any) -> Any:
@@ -52,6 +52,36 @@ class Settings:
         "fraction of the flux, by which a star departs from the emitter; log-uniform",
         lower=1e-4,
         upper=1.0,
+    )
+    atmosphere_misfit_range: tuple[float, float] = _setting(
+        (0.03, 0.1),
+        "priors.misfit_atmosphere",
+        "the same for --emitter atmosphere; its models left 3 per cent rms in the colours of "
+        "stars of known temperature and diameter",
+        lower=1e-4,
+        upper=1.0,
+    )
+    logg_range: tuple[float, float] = _setting(
+        (0.5, 5.0),
+        "priors.logg",
+        "log10 of cm s-2; uniform between these bounds where the row gives no logg; atmosphere",
+        lower=0.5,
+        upper=5.0,
+    )
+    feh_mean: float = _setting(
+        -0.1,
+        "priors.feh",
+        "dex; mean of the Gaussian prior where the row gives no feh; atmosphere",
+        lower=-2.5,
+        upper=0.5,
+    )
+    feh_width: float = _setting(
+        0.3,
+        "priors.feh_width",
+        "dex; its width (a choice, wider than the -0.14 +- 0.19 of nearby dwarfs in Nordstroem "
+        "et al. 2004, A&A 418, 989, from memory)",
+        lower=0.01,
+        upper=3.0,
     )
     use_published_temperature: bool = _setting(
         False,
@@ -108,6 +138,12 @@ class Settings:
             "lower": 0.0,
             "upper": 1.0,
         },
+    )
+    atmosphere_offsets: bool = _setting(
+        True,
+        "offsets.atmosphere",
+        "atmosphere: correct Gaia and 2MASS bands (and WISE W3 of saturated stars) by observed "
+        "minus model magnitudes, whose errors are added; of stars of 4,300 to 7,000 K",
     )
     distance_prior: str = _setting(
         "exponential",
@@ -169,9 +205,13 @@ class Settings:
 
     def __post_init__(self) -> None:
         for item in fields(self):
-            object.__setattr__(self, item.name, _checked(item, getattr(self, item.name)))
+            object.__setattr__(self, item.name, checked(item, getattr(self, item.name)))
         if self.walkers % 2:
             raise SettingsError(f"sampling.walkers = {self.walkers} is odd; give an even number")
+
+    def misfit_range_of(self, emitter: str) -> tuple[float, float]:
+        """Return the range of the misfit's prior for the emitter of that name."""
+        return self.atmosphere_misfit_range if emitter == "atmosphere" else self.misfit_range
 
     def as_dict(self) -> dict[str, Any]:
         """Return the settings by their field names, ready for JSON."""
@@ -225,7 +265,7 @@ def describe_settings() -> str:
             lines.append(f"[{head}]")
             section = head
         default = {} if item.default is MISSING else item.default
-        lines.append(f"{key} = {_toml(default)}")
+        lines.append(f"{key} = {toml(default)}")
         lines += [f"    # {line}" for line in textwrap.wrap(item.metadata["text"], 80)]
     return "\n".join(lines)
 
@@ -247,62 +287,3 @@ def _from_tables(content: Mapping[str, Any]) -> dict[str, Any]:
 def _nearest(text: str, known: Mapping[str, str]) -> str:
     close = get_close_matches(text, known, n=2, cutoff=0.4)
     return f"; did you mean {' or '.join(close)}?" if close else "; the help of fit lists the keys"
-
-
-def _checked(item: Any, value: Any) -> Any:
-    meta, default = item.metadata, item.default
-    key = meta["key"]
-    if default is MISSING:
-        if not isinstance(value, Mapping):
-            raise SettingsError(f"{key} = {value!r} must be a table of numbers")
-        return {str(k): _number(v, f"{key}.{k}", meta) for k, v in value.items()}
-    if isinstance(default, tuple):
-        return _range(value, key, meta)
-    if isinstance(default, bool):
-        if not isinstance(value, bool):
-            raise SettingsError(f"{key} = {value!r} must be true or false")
-        return value
-    if isinstance(default, str):
-        choices = meta.get("choices", ())
-        if not isinstance(value, str) or (choices and value not in choices):
-            wanted = " or ".join(choices) or "a name"
-            raise SettingsError(f"{key} = {value!r} must be {wanted}")
-        return value
-    number = _number(value, key, meta)
-    if isinstance(default, int):
-        if number != int(number):
-            raise SettingsError(f"{key} = {value!r} must be a whole number")
-        return int(number)
-    return number
-
-
-def _number(value: Any, key: str, meta: Mapping[str, Any]) -> float:
-    if isinstance(value, bool) or not isinstance(value, (int, float)) or not math.isfinite(value):
-        raise SettingsError(f"{key} = {value!r} must be a number")
-    if not meta["lower"] <= value <= meta["upper"]:
-        raise SettingsError(
-            f"{key} = {value:g} is out of bounds: {meta['lower']:g} to {meta['upper']:g} "
-            f"({meta['text'].split(';')[0]})"
-        )
-    return float(value)
-
-
-def _range(value: Any, key: str, meta: Mapping[str, Any]) -> tuple[float, float]:
-    if not isinstance(value, (list, tuple)) or len(value) != 2:
-        raise SettingsError(f"{key} = {value!r} must be two numbers, [lower, upper]")
-    low, high = (_number(edge, key, meta) for edge in value)
-    if low >= high:
-        raise SettingsError(f"{key} = [{low:g}, {high:g}] must rise: [lower, upper]")
-    return (low, high)
-
-
-def _toml(value: Any) -> str:
-    if isinstance(value, bool):
-        return "true" if value else "false"
-    if isinstance(value, tuple):
-        return "[" + ", ".join(f"{item:g}" for item in value) + "]"
-    if isinstance(value, str):
-        return f'"{value}"'
-    if isinstance(value, dict):
-        return "{}"
-    return f"{value:g}" if isinstance(value, float) else str(value)

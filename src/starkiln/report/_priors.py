@@ -35,17 +35,19 @@ def priors_of_problem(problem: Problem) -> dict[str, Density]:
     return found
 
 
-def priors_of_settings(settings: Settings) -> dict[str, Density]:
-    """Return the prior densities that are the same for every star of a run.
+def priors_of_settings(settings: Settings, emitter: Any) -> dict[str, Density]:
+    """Return the prior densities that are the same for every star of a run of `emitter`.
 
-    A row's own dust or published temperature is no part of the settings, so the
-    priors made from them are left out.
+    A row's own dust, published temperature, log g and metallicity are no part of the
+    settings, so the priors made from them are left out.
     """
     ranges = {"angular_diameter": settings.diameter_range}
     if not settings.use_published_temperature:
-        ranges["temperature"] = settings.temperature_range
+        low, high = settings.temperature_range
+        first, last = emitter.bounds["temperature"]
+        ranges["temperature"] = (max(low, first), min(high, last))
     if settings.misfit:
-        ranges["misfit"] = settings.misfit_range
+        ranges["misfit"] = settings.misfit_range_of(emitter.name)
     found = {
         key: _density(Uniform(math.log(low), math.log(high)), True)
         for key, (low, high) in ranges.items()

@@ -170,7 +170,7 @@ def run_view(run: Run, row: int) -> FitView:
         summary=summary,
         model=model,
         spectrum=spectrum,
-        priors=priors_of_settings(run.settings),
+        priors=priors_of_settings(run.settings, run.emitter),
     )
 
 

@@ -283,7 +283,7 @@ def _identity(catalogue: Catalogue, recipe: Recipe, file_format: str) -> dict[st
 
 def _described(recipe: Recipe) -> dict[str, Any]:
     return {
-        "priors": describe_priors(recipe.settings),
+        "priors": describe_priors(recipe.settings, recipe.emitter),
         "started": _now(),
         "host": platform.node(),
         "python": platform.python_version(),

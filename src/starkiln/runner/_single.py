@@ -8,7 +8,7 @@ import numpy as np
 
 from starkiln.derived import intervals, quantities_of
 from starkiln.dust import Dust
-from starkiln.emitters import EMITTERS
+from starkiln.emitters import EMITTERS, AtmosphereEmitter
 from starkiln.errors import InputError, SettingsError
 from starkiln.inference import (
     ENGINES,
@@ -25,6 +25,8 @@ from starkiln.observations import Star
 from starkiln.runner._result import FitResult
 from starkiln.runner._threads import one_thread
 
+#: Nearer than this fraction to where the models end, a median temperature is refused.
+_AT_THE_END = 0.01
 #: Draws that a result holds unless more are asked for; its percentiles come from all.
 _MOST_DRAWS = 4000
 
@@ -63,7 +65,8 @@ def fit(
     Raises
     ------
     InputError
-        The star has no usable band or contradicts itself, or a name is unknown.
+        The star has no usable band or contradicts itself, lies beyond the models of the
+        emitter, or a name is unknown.
     """
     settings = settings or Settings()
     dust = dust or dust_of(settings)
@@ -75,6 +78,7 @@ def fit(
         samples = engine_of(engine)(problem, stream)
     distance_pc = None if distance is None else distance.draw(stream, len(samples.x), samples.spare)
     draws = quantities_of(problem, samples.x, distance_pc)
+    _refuse_beyond(problem, draws["temperature"])
     probability = fit_probability(problem, samples)
     flags = find_flags(problem, samples, probability)
     if distance is not None and distance.sd > 0.7 * distance.prior_sd:
@@ -83,7 +87,9 @@ def fit(
     return FitResult(
         star=star,
         status="ok" if samples.converged else "unconverged",
-        message=_message(problem, distance, samples.message, flags),
+        message=_message(
+            problem, distance, [samples.message, _emitter_note(problem, draws)], flags
+        ),
         flags=tuple(flags),
         engine=engine,
         n_bands=len(problem.bands.names),
@@ -168,7 +174,7 @@ def _kept(stream: np.random.Generator, n: int, asked: int) -> np.ndarray:
 
 
 def _message(
-    problem: Problem, distance: DistancePosterior | None, engine_note: str, flags: list[str]
+    problem: Problem, distance: DistancePosterior | None, more: list[str], flags: list[str]
 ) -> str:
     notes = [*problem.star.notes, *problem.notes]
     if distance is None:
@@ -177,6 +183,25 @@ def _message(
         notes.append(f"only {len(problem.bands.names)} usable band(s)")
     if "poor_blackbody" in flags:
         notes.append(f"the quoted errors alone do not allow this {problem.emitter.name}")
-    if engine_note:
-        notes.append(engine_note)
-    return "; ".join(notes)
+    return "; ".join([*notes, *filter(None, more)])
+
+
+def _refuse_beyond(problem: Problem, temperature: np.ndarray) -> None:
+    """Refuse a star whose temperature piles up where the model atmospheres end."""
+    emitter = problem.emitter
+    if not isinstance(emitter, AtmosphereEmitter):
+        return
+    for end in emitter.bounds["temperature"]:
+        if abs(float(np.median(temperature)) / end - 1.0) < _AT_THE_END:
+            raise InputError(
+                f"the temperature piles up at {end:.0f} K, and the star may lie beyond: "
+                f"{emitter.limits}; use --emitter blackbody"
+            )
+
+
+def _emitter_note(problem: Problem, draws: dict[str, np.ndarray]) -> str:
+    """Return what to be wary of where the posterior lies, by the emitter's own account."""
+    if not isinstance(problem.emitter, AtmosphereEmitter):
+        return ""
+    temperature, logg, feh = (float(np.median(draws[n])) for n in ("temperature", "logg", "feh"))
+    return problem.emitter.note(temperature, logg, feh, problem.bands.names)
