@@ -188,3 +188,19 @@ def test_misfit_and_offsets_are_settings_and_told():
     assert not {"logg", "feh", "band_offsets"} & set(describe_priors(Settings()))
     with pytest.raises(SettingsError, match=r"priors.feh_width = 0 is out of bounds"):
         Settings(feh_width=0.0)
+
+
+def test_both_engines_agree_where_gravity_and_metallicity_are_given():
+    star = Star("a", FIVE, logg=4.4, feh=-0.2, av=(0.2, 0.1))
+    settings = Settings(effective_draws=4000)
+    chain = fit(star, emitter="atmosphere", settings=settings)
+    sums = fit(star, emitter="atmosphere", engine="quadrature", settings=settings)
+    for name in ("temperature", "angular_diameter", "av", "bolometric_flux"):
+        middle, low, high = sums.summary[name]
+        np.testing.assert_allclose(
+            np.divide(chain.summary[name], middle),
+            np.divide(sums.summary[name], middle),
+            atol=0.06 * (high - low) / middle,
+        )  # 5 standard errors of a percentile of 4,000 draws
+    with pytest.raises(SettingsError, match="cannot vary logg"):
+        fit(Star("a", FIVE, feh=0.0), emitter="atmosphere", engine="quadrature")
