@@ -162,6 +162,20 @@ def test_notes_near_the_edges():
     assert "winds" in emitter.note(35000.0, 4.2, 0.0)
     assert "lowest" in emitter.note(9000.0, 1.5, 0.0)
     assert "[Fe/H]" in emitter.note(6000.0, 4.0, 0.5)
+    assert "WISE W2" in emitter.note(5000.0, 4.5, 0.0, ("Gaia G", "WISE W2"))
+    assert emitter.note(5000.0, 4.5, 0.0, ("Gaia G",)) == ""
+
+
+def test_given_values_are_no_parameters():
+    emitter = AtmosphereEmitter(feh=-0.3)
+    assert emitter.parameters == ("temperature", "logg")
+    assert dict(emitter.given) == {"feh": -0.3}
+    _, _, feh = emitter.complete(np.array([5000.0, 6000.0]), np.array([4.0, 4.5]))
+    np.testing.assert_array_equal(feh, [-0.3, -0.3])
+    # What rounding to single precision does to a value at the edge is no refusal.
+    emitter.complete(np.array([4200.0 * (1.0 - 6e-8)]), np.array([5.0 + 2e-7]))
+    with pytest.raises(InputError, match="outside the model atmospheres"):
+        emitter.complete(np.array([4199.0]), np.array([4.0]))
 
 
 def test_file_is_small_and_says_where_it_comes_from():
