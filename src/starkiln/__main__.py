@@ -2,7 +2,7 @@
 
 import sys
 
-from starkiln.cli import main
+from starkiln.cli import console
 
 if __name__ == "__main__":
-    sys.exit(main())
+    sys.exit(console())

@@ -8,6 +8,7 @@ import subprocess
 import sys
 import time
 
+import psutil
 import pytest
 
 TABLES = ("results.ecsv", "photometry.ecsv", "draws.fits")
@@ -19,7 +20,8 @@ SETTINGS = "[sampling]\neffective_draws = 300\nwalkers = 32\ndraws = 20\n[dust]\
 def stars(tmp_path_factory):
     folder = tmp_path_factory.mktemp("stars")
     rows = [
-        f"Mirel {i},{10.2 + 0.1 * i},0.01,9.10,0.02,8.66,0.02,2.31,0.03,0.3,0.05" for i in range(6)
+        f"Mirel {i},{10.2 + 0.01 * i:.2f},0.01,9.10,0.02,8.66,0.02,2.31,0.03,0.3,0.05"
+        for i in range(40)
     ]
     (folder / "stars.csv").write_text("\n".join([HEAD, *rows]) + "\n")
     (folder / "settings.toml").write_text(SETTINGS)
@@ -44,6 +46,15 @@ def finish(folder, run, workers=1):
     return [(folder / run / name).read_bytes() for name in TABLES]
 
 
+def wait_for_a_part(run, process):
+    parts = run / "parts"
+    end = time.monotonic() + 120.0
+    while not (parts.is_dir() and list(parts.glob("rows-*.npz"))):
+        assert time.monotonic() < end
+        assert process.poll() is None
+        time.sleep(0.02)
+
+
 def begin_and_send(folder, run, workers, what):
     """Start the command, send a signal once a part is written; return its exit code."""
     process = subprocess.Popen(
@@ -54,12 +65,7 @@ def begin_and_send(folder, run, workers, what):
         text=True,
         start_new_session=True,
     )
-    parts = folder / run / "parts"
-    end = time.monotonic() + 120.0
-    while not (parts.is_dir() and list(parts.glob("rows-*.npz"))):
-        assert time.monotonic() < end
-        assert process.poll() is None, process.communicate()
-        time.sleep(0.02)
+    wait_for_a_part(folder / run, process)
     os.killpg(process.pid, what)
     _, errors = process.communicate(timeout=60)
     return process.returncode, errors
@@ -79,3 +85,32 @@ def test_kill_9_leaves_a_run_that_resumes_to_the_same_bytes(stars, whole):
     assert code == -signal.SIGKILL
     assert not (stars / "killed" / "results.ecsv").exists()
     assert finish(stars, "killed") == whole
+
+
+def test_a_second_fit_in_the_same_folder_is_told_to_wait(stars):
+    first = subprocess.Popen(
+        command(stars, "shared", 1), cwd=stars, stdout=subprocess.DEVNULL, start_new_session=True
+    )
+    try:
+        wait_for_a_part(stars / "shared", first)
+        second = subprocess.run(
+            command(stars, "shared", 1), cwd=stars, capture_output=True, text=True, check=False
+        )
+        assert second.returncode == 2
+        assert "another starkiln fit is at work in shared" in second.stderr
+        assert first.wait(timeout=120) == 0
+    finally:
+        first.kill()
+
+
+def test_workers_end_when_their_parent_was_killed(stars):
+    process = subprocess.Popen(
+        command(stars, "orphans", 2), cwd=stars, stdout=subprocess.DEVNULL, start_new_session=True
+    )
+    wait_for_a_part(stars / "orphans", process)
+    children = psutil.Process(process.pid).children(recursive=True)
+    assert len(children) >= 2
+    process.kill()
+    process.wait()
+    _, alive = psutil.wait_procs(children, timeout=15)
+    assert alive == []

@@ -63,7 +63,7 @@ def test_fixed_and_absent_dust_is_no_parameter():
 
 
 def test_impossible_dust_is_named():
-    with pytest.raises(InputError, match="av = 12 mag is above 10 mag"):
+    with pytest.raises(InputError, match="av = 12 mag is out of bounds"):
         problem_of(Star("a", FIVE, av=(12.0, 0.1)))
     with pytest.raises(InputError, match="negative by more than 6 sigma"):
         problem_of(Star("a", FIVE, av=(-0.9, 0.1)))

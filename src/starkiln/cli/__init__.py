@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import argparse
 import shlex
+import signal
 import sys
 from collections.abc import Sequence
 from importlib import import_module
@@ -40,6 +41,23 @@ _DESCRIPTION = (
 )
 
 
+def console() -> int:
+    """Run the command line as a process of its own: the console command.
+
+    SIGTERM, with which batch systems end a job, is taken as Ctrl-C; after the first
+    of either, further ones no longer disturb the way out.
+    """
+    signal.signal(signal.SIGTERM, signal.default_int_handler)
+    try:
+        code = main()
+    except KeyboardInterrupt:
+        code = 130
+    if code == 130:
+        signal.signal(signal.SIGINT, signal.SIG_IGN)
+        signal.signal(signal.SIGTERM, signal.SIG_IGN)
+    return code
+
+
 def main(argv: Sequence[str] | None = None) -> int:
     """Run the command line and return its exit code.
 
@@ -47,22 +65,24 @@ def main(argv: Sequence[str] | None = None) -> int:
     130 interrupted and resumable.
     """
     words = list(sys.argv[1:] if argv is None else argv)
-    parser = _parser(words)
-    args = parser.parse_args(words)
-    args.command_line = shlex.join(["starkiln", *words])
-    if args.command is None:
-        parser.print_help(sys.stderr)
-        return 2
+    label = "starkiln"
     try:
+        parser = _parser(words)
+        args = parser.parse_args(words)
+        args.command_line = shlex.join(["starkiln", *words])
+        if args.command is None:
+            parser.print_help(sys.stderr)
+            return 2
+        label = f"starkiln {args.command}"
         return int(args.execute(args))
     except StarkilnError as error:
-        sys.stderr.write(f"starkiln {args.command}: {error}\n")
+        sys.stderr.write(f"{label}: {error}\n")
         return error.exit_code
     except BrokenPipeError:
         sys.stderr.close()
         return 1
     except KeyboardInterrupt:
-        sys.stderr.write(f"starkiln {args.command}: interrupted\n")
+        sys.stderr.write(f"{label}: interrupted\n")
         return 130
 
 

@@ -1,7 +1,7 @@
 """One star's posterior: settings, priors, likelihood, engines, diagnostics."""
 
 from starkiln.inference._describe import describe_priors
-from starkiln.inference._diagnostics import find_flags, fit_probability
+from starkiln.inference._diagnostics import find_edges, find_flags, fit_probability
 from starkiln.inference._distance import (
     DistancePosterior,
     from_distance,
@@ -26,6 +26,7 @@ __all__ = [
     "build_problem",
     "describe_priors",
     "describe_settings",
+    "find_edges",
     "find_flags",
     "fit_probability",
     "from_distance",

@@ -22,6 +22,12 @@ CORRELATION = 0.9
 EDGE_WIDTH, EDGE_SHARE = 0.01, 0.02
 #: Priors of A_V that come from no knowledge of the star.
 _FREE = ("free", "gaussian", "uniform")
+#: Parameters as the observer calls them.
+_PLAIN = {
+    "ln_temperature": "temperature",
+    "ln_diameter": "angular diameter",
+    "ln_misfit": "misfit",
+}
 #: `few_bands` below this number of usable bands.
 FEW = 3
 #: Parameters whose Gaussian prior is knowledge of the star, which the predictive check keeps.
@@ -81,7 +87,7 @@ def find_flags(problem: Problem, samples: Samples, probability: float) -> list[s
         flags.append("poor_blackbody")
     if any(_wide(problem, samples, name) for name in ("ln_temperature", "av")):
         flags.append("prior_dominated")
-    if any(_at_edge(problem, samples, name) for name in problem.names):
+    if find_edges(problem, samples):
         flags.append("at_edge")
     if "av" in problem.names and problem.dust.prior in _FREE:
         temperature = problem.column(samples.x, "ln_temperature")
@@ -94,6 +100,15 @@ def find_flags(problem: Problem, samples: Samples, probability: float) -> list[s
     if problem.star.saturated_bands:
         flags.append("saturated")
     return flags
+
+
+def find_edges(problem: Problem, samples: Samples) -> list[str]:
+    """Return, in words, the bounds of priors on which the posterior leans."""
+    return [
+        f"{_PLAIN.get(name, name)} leans on {edge}, a bound of its prior"
+        for name in problem.names
+        if (edge := _edge(problem, samples, name))
+    ]
 
 
 def _whitener(problem: Problem) -> Any:
@@ -166,15 +181,17 @@ def _wide(problem: Problem, samples: Samples, name: str) -> bool:
     return bool(np.std(problem.column(samples.x, name)) > PRIOR_SHARE * prior.sd)
 
 
-def _at_edge(problem: Problem, samples: Samples, name: str) -> bool:
+def _edge(problem: Problem, samples: Samples, name: str) -> str:
+    """Return the bound on which a parameter's posterior leans; empty for none."""
     low, high = problem.bounds[problem.names.index(name)]
     if name in _LOOSE and _wide(problem, samples, name):
-        return False
-    if name == "av" or name == "ln_misfit":
-        # A_V = 0 and the smallest misfit are natural ends; only the upper one is a limit.
-        low = -np.inf
+        return ""
     x = problem.column(samples.x, name)
-    span = EDGE_WIDTH * (
-        high - (low if np.isfinite(low) else problem.bounds[problem.names.index(name)][0])
-    )
-    return bool(np.mean((x < low + span) | (x > high - span)) > EDGE_SHARE)
+    span = EDGE_WIDTH * (high - low)
+    # A_V = 0 and the smallest misfit are natural ends; only the upper one is a limit.
+    at_low = 0.0 if name in ("av", "ln_misfit") else float(np.mean(x < low + span))
+    at_high = float(np.mean(x > high - span))
+    if at_low + at_high <= EDGE_SHARE:
+        return ""
+    bound = low if at_low > at_high else high
+    return f"{np.exp(bound) if name.startswith('ln_') else bound:.6g}"

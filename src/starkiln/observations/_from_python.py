@@ -102,21 +102,16 @@ def _one_known(known: Known, entry: Any, label: str) -> dict[str, float]:
     value = as_float(first, unit, f"{label}: {known.name}")
     error = None if second is None else as_float(second, unit, f"{label}: e_{known.name}")
     try:
-        check_value(known, value, error)
+        check_value(known, value)
+        check_error_of(known, value, error)
     except InputError as problem:
         raise InputError(f"{label}: {problem}") from problem
     pair = {known.field: value}
     return pair if error is None else pair | {f"e_{known.field}": error}
 
 
-def check_value(known: Known, value: float, error: float | None) -> None:
-    """Refuse a value or an error of a known quantity that cannot be.
-
-    Raises
-    ------
-    InputError
-        Out of bounds, not finite, or without the error that it needs.
-    """
+def check_value(known: Known, value: float) -> None:
+    """Refuse a value of a known quantity that is not finite or out of bounds."""
     low = value <= known.lower if known.strict else value < known.lower
     if not math.isfinite(value) or low or value > known.upper:
         bounds = f"{'above' if known.strict else 'at least'} {known.lower:g} and at most "
@@ -125,6 +120,10 @@ def check_value(known: Known, value: float, error: float | None) -> None:
             + f" is out of bounds ({bounds}{known.upper:g}); if it means missing, leave it "
             f"empty or say so in a column sheet: missing = [{value:g}]"
         )
+
+
+def check_error_of(known: Known, value: float, error: float | None) -> None:
+    """Refuse an error of a known quantity that cannot be, or its absence where it is needed."""
     if error is None:
         if known.error == "required":
             raise InputError(

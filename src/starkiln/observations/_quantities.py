@@ -45,7 +45,7 @@ class Known:
 QUANTITIES = (
     Known("parallax", "mas", "parallax_mas", "parallax", -800.0, 800.0, error="required"),
     Known("distance", "pc", "distance_pc", "distance", 0.0, 1e10, strict=True, error="required"),
-    Known("av", "mag", "av", "extinction at 0.55 um", -1.0, 100.0, error="exact"),
+    Known("av", "mag", "av", "extinction at 0.55 um", -1.0, 10.0, error="exact"),
     Known("ebv", "mag", "ebv", "colour excess E(B-V)", -0.4, 40.0, error="exact"),
     Known("rv", "", "rv", "ratio of extinction to colour excess", 1.0, 10.0, error="none"),
     Known("logg", "dex", "logg", "log10 of surface gravity in cm s-2", -3.0, 16.0),

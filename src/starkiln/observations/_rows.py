@@ -12,7 +12,7 @@ from starkiln.observations._cells import (
     texts_of,
 )
 from starkiln.observations._files import Source
-from starkiln.observations._from_python import check_value
+from starkiln.observations._from_python import check_error_of, check_value
 from starkiln.observations._measure import MAG_TO_LN, Measurement, check_error, measure
 from starkiln.observations._plan import BandColumn, KnownColumn, Layout
 from starkiln.observations._quantities import av_from_ebv
@@ -115,12 +115,13 @@ class _Row:
             if value is None:
                 return {}
             value *= column.factor
+            check_value(known, value)
             error = column.constant
             if column.error is not None:
                 heading = column.error.heading
                 error = _plain(numbers[heading])
                 error = None if error is None else error * column.error_factor
-            check_value(known, value, error)
+            check_error_of(known, value, error)
         except InputError as problem:
             self.problems.append(f"column '{heading}': {problem}")
             return {}

@@ -82,7 +82,11 @@ def convert(
     unit = unit if unit is not None else own_unit
     if unit is None:
         raise InputError("the value has no unit: give unit=, for example 'mag' or 'mJy'")
-    errors = 0.0 if error is None else plain_values(error)[0]
+    errors = np.zeros(()) if error is None else plain_values(error)[0]
+    if np.any(errors < 0.0):
+        raise InputError(
+            f"an error of {errors[errors < 0.0].flat[0]:g} is negative; give 0 or more"
+        )
     flux, flux_error = flux_from(given, errors, unit, band, magnitude_system)
     new, new_error = flux_to(flux, flux_error, to, band, magnitude_system)
     if new.shape == () and np.isnan(new) and not np.isnan(given):

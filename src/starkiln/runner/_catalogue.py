@@ -22,7 +22,15 @@ from starkiln.errors import InputError, SettingsError
 from starkiln.inference import Settings, describe_priors
 from starkiln.observations import BadRow, Catalogue, Star
 from starkiln.runner._executors import make_executor, outcome
-from starkiln.runner._folder import PARTS, Part, done_rows, prepare, write_meta, write_part
+from starkiln.runner._folder import (
+    PARTS,
+    Part,
+    done_rows,
+    held,
+    prepare,
+    write_meta,
+    write_part,
+)
 from starkiln.runner._join import join_parts
 from starkiln.runner._run import Run, open_run
 from starkiln.runner._single import dust_of, emitter_of, engine_of, fit
@@ -133,7 +141,9 @@ def fit_catalogue(
     meta = prepare(
         target, _identity(catalogue, recipe, file_format), {**(record or {}), **_described(recipe)}
     )
-    if not meta["complete"]:
+    if meta["complete"]:
+        return open_run(target)
+    with held(target):
         _work(catalogue, target, recipe, _worker_count(workers, len(catalogue)), progress)
         join_parts(target, catalogue, recipe.keep_draws, file_format)
         meta["finished"] = _now()

@@ -2,9 +2,13 @@
 
 from __future__ import annotations
 
+import contextlib
 import multiprocessing
+import os
 import signal
-from collections.abc import Callable
+import threading
+import time
+from collections.abc import Callable, Iterator
 from concurrent.futures import Future, ProcessPoolExecutor
 from concurrent.futures.process import BrokenProcessPool
 from typing import Any, Protocol
@@ -48,12 +52,16 @@ class PoolExecutor:
     def __init__(self, workers: int) -> None:
         self.slots = workers
         self._pool = ProcessPoolExecutor(
-            workers, multiprocessing.get_context("spawn"), initializer=_ignore_interrupt
+            workers,
+            multiprocessing.get_context("spawn"),
+            initializer=_begin_worker,
+            initargs=(os.getpid(),),
         )
 
     def submit(self, function: Callable[..., Any], *args: Any) -> Future:
         """Start a call in a worker and return its future."""
-        return self._pool.submit(function, *args)
+        with _interrupts_ignored():
+            return self._pool.submit(function, *args)
 
     def stop(self, *, at_once: bool) -> None:
         """End the workers."""
@@ -79,6 +87,26 @@ def outcome(future: Future) -> Any:
         ) from error
 
 
-def _ignore_interrupt() -> None:
-    # Ctrl-C reaches the whole process group; only the parent decides what to do.
+@contextlib.contextmanager
+def _interrupts_ignored() -> Iterator[None]:
+    """Start worker processes deaf to Ctrl-C, which reaches the whole process group."""
+    if threading.current_thread() is not threading.main_thread():
+        yield
+        return
+    before = signal.signal(signal.SIGINT, signal.SIG_IGN)
+    try:
+        yield
+    finally:
+        signal.signal(signal.SIGINT, before)
+
+
+def _begin_worker(parent: int) -> None:
+    """Leave Ctrl-C to the parent, and end when the parent has gone, however it went."""
     signal.signal(signal.SIGINT, signal.SIG_IGN)
+    threading.Thread(target=_follow, args=(parent,), daemon=True).start()
+
+
+def _follow(parent: int) -> None:
+    while os.getppid() == parent:
+        time.sleep(1.0)
+    os._exit(1)

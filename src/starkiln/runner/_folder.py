@@ -8,6 +8,7 @@ and whatever does not stand there is not.
 
 from __future__ import annotations
 
+import contextlib
 import json
 import zipfile
 from collections.abc import Iterator, Mapping
@@ -19,6 +20,11 @@ import numpy as np
 
 from starkiln.errors import RunFolderError, StorageError
 from starkiln.store import atomic_write
+
+try:
+    import fcntl
+except ImportError:  # not on Windows, where a folder is not locked
+    fcntl = None  # type: ignore[assignment]
 
 RUN_FILE = "run.json"
 PARTS = "parts"
@@ -103,6 +109,28 @@ def prepare(folder: Path, identity: Mapping[str, Any], described: Mapping[str, A
     write_meta(folder, meta)
     (folder / PARTS).mkdir(exist_ok=True)
     return meta
+
+
+@contextlib.contextmanager
+def held(folder: Path) -> Iterator[None]:
+    """Hold a run folder for this process alone; the lock ends with the process.
+
+    Raises
+    ------
+    RunFolderError
+        Another process works in it.
+    """
+    if fcntl is None:
+        yield
+        return
+    with (folder / ".lock").open("w") as stream:
+        try:
+            fcntl.flock(stream, fcntl.LOCK_EX | fcntl.LOCK_NB)
+        except BlockingIOError:
+            raise RunFolderError(
+                f"another starkiln fit is at work in {folder}; wait for its end, or stop it"
+            ) from None
+        yield
 
 
 def read_meta(folder: Path) -> dict[str, Any]:

@@ -34,13 +34,15 @@ def join_parts(folder: Path, catalogue: Catalogue, keep_draws: bool, file_format
     photometry: list[dict[str, Any]] = []
     draws: list[dict[str, np.ndarray] | None] = []
     for part in read_parts(folder):
-        if part.start != len(results):
+        done = len(results)
+        if part.start > done:
             raise RunFolderError(
-                f"{folder}: rows {len(results) + 1} to {part.start} are missing; run again"
+                f"{folder}: rows {done + 1} to {part.start} are missing; run again"
             )
-        results += part.results
-        photometry += part.photometry
-        draws += part.draws
+        # A row that stands in two parts is the same in both.
+        results += part.results[done - part.start :]
+        photometry += [row for row in part.photometry if row["row"] > done]
+        draws += part.draws[done - part.start :]
     quantities = _quantities(results, catalogue)
     write_table(
         build_table(results, result_columns(quantities)),

@@ -16,6 +16,7 @@ from starkiln.inference import (
     Problem,
     Settings,
     build_problem,
+    find_edges,
     find_flags,
     fit_probability,
     from_distance,
@@ -88,7 +89,10 @@ def fit(
         star=star,
         status="ok" if samples.converged else "unconverged",
         message=_message(
-            problem, distance, [samples.message, _emitter_note(problem, draws)], flags
+            problem,
+            distance,
+            [*find_edges(problem, samples), samples.message, _emitter_note(problem, draws)],
+            flags,
         ),
         flags=tuple(flags),
         engine=engine,

@@ -94,9 +94,13 @@ def _sampler(problem: Problem, population: np.ndarray) -> Any:
     proposal = PopulationProposal(population, funnel)
     dimension = population.shape[1]
     moves = [(emcee.moves.DEMove(), 0.35), (emcee.moves.MHMove(proposal, ndim=dimension), 0.65)]
-    return emcee.EnsembleSampler(
+    sampler = emcee.EnsembleSampler(
         problem.settings.walkers, dimension, problem.ln_posterior, vectorize=True, moves=moves
     )
+    # emcee's wrapper of the function prints a traceback when Ctrl-C meets it; bare, the
+    # interruption goes its way.
+    sampler.log_prob_fn = problem.ln_posterior
+    return sampler
 
 
 def _split(chain: np.ndarray) -> tuple[int, np.ndarray]:
