@@ -83,7 +83,7 @@ def test_a_star_alone_is_the_star_in_company(catalogue, recipe, finished):
 def test_an_interrupted_run_resumes_to_the_same_bytes(
     catalogue, recipe, finished, tmp_path, monkeypatch
 ):
-    monkeypatch.setattr("starkiln.runner._catalogue._UNIT_SECONDS", 1e-9)  # one row a unit
+    monkeypatch.setattr("starkiln.runner._progress._UNIT_SECONDS", 1e-9)  # one row a unit
 
     def stop(state):
         if state.done >= 2:

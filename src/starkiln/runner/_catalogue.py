@@ -6,7 +6,6 @@ import math
 import os
 import platform
 import shutil
-import time
 from collections.abc import Callable, Iterator, Mapping
 from concurrent.futures import FIRST_COMPLETED, Future, wait
 from dataclasses import dataclass, field
@@ -32,13 +31,11 @@ from starkiln.runner._folder import (
     write_part,
 )
 from starkiln.runner._join import join_parts
+from starkiln.runner._progress import Progress, Tally
 from starkiln.runner._run import Run, open_run
 from starkiln.runner._single import dust_of, emitter_of, engine_of, fit
 from starkiln.runner._tables import photometry_rows, rejected_row, result_row
 
-#: Seconds of work that a unit should hold, so that little is lost and little is waited for.
-_UNIT_SECONDS = 2.0
-_MOST_ROWS = 5000
 #: Catalogues beyond this size keep no draws unless asked to.
 MOST_ROWS_WITH_DRAWS = 10_000
 _LIBRARIES = ("numpy", "scipy", "astropy", "emcee", "dust_extinction", "speclite")
@@ -62,27 +59,6 @@ class Recipe:
     settings: Settings = field(default_factory=Settings)
     seed: int = 0
     keep_draws: bool = True
-
-
-@dataclass(frozen=True)
-class Progress:
-    """How far a run has come.
-
-    Attributes
-    ----------
-    done, total, rejected : int
-        Rows.
-    elapsed_s : float
-        Since this command began.
-    fresh : int
-        Rows done by this command.
-    """
-
-    done: int
-    total: int
-    rejected: int
-    elapsed_s: float
-    fresh: int
 
 
 def fit_catalogue(
@@ -191,28 +167,6 @@ def _fit_row(row: Star | BadRow, recipe: Recipe) -> tuple[dict, dict | None]:
     return result_row(result), kept
 
 
-class _Tally:
-    """What this command has done so far, and at what rate."""
-
-    def __init__(self, todo: int, total: int, slots: int) -> None:
-        self._begun, self._todo, self._total, self._slots = time.monotonic(), todo, total, slots
-        self._fresh = self._rejected = 0
-
-    def add(self, part: Part) -> Progress:
-        """Count a part and return the progress after it."""
-        self._fresh += len(part.results)
-        self._rejected += sum(row["status"] == "rejected" for row in part.results)
-        done = self._total - self._todo + self._fresh
-        elapsed = time.monotonic() - self._begun
-        return Progress(done, self._total, self._rejected, elapsed, self._fresh)
-
-    @property
-    def unit_rows(self) -> int:
-        """Rows that a worker does in about `_UNIT_SECONDS`, at the rate so far."""
-        rate = self._fresh / max(time.monotonic() - self._begun, 1e-9) / self._slots
-        return min(max(1, int(rate * _UNIT_SECONDS)), _MOST_ROWS)
-
-
 def _work(
     catalogue: Catalogue,
     folder: Path,
@@ -224,7 +178,7 @@ def _work(
     gaps = _gaps(done_rows(folder), len(catalogue))
     todo = sum(stop - start for start, stop in gaps)
     executor = make_executor(min(workers, max(todo, 1)))
-    tally = _Tally(todo, len(catalogue), executor.slots)
+    tally = Tally(todo, len(catalogue), executor.slots)
     units = _units(gaps, tally)
     # One unit waits behind each that is being done; in this process there is no waiting.
     most = 1 if executor.slots == 1 else 2 * executor.slots
@@ -248,7 +202,7 @@ def _work(
         executor.stop(at_once=not finished)
 
 
-def _units(gaps: list[tuple[int, int]], tally: _Tally) -> Iterator[tuple[int, int]]:
+def _units(gaps: list[tuple[int, int]], tally: Tally) -> Iterator[tuple[int, int]]:
     """Cut what is to do into units of rows."""
     for start, stop in gaps:
         here = start
