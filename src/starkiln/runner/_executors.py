@@ -60,7 +60,7 @@ class PoolExecutor:
 
     def submit(self, function: Callable[..., Any], *args: Any) -> Future:
         """Start a call in a worker and return its future."""
-        with _interrupts_ignored():
+        with _interrupts_held():
             return self._pool.submit(function, *args)
 
     def stop(self, *, at_once: bool) -> None:
@@ -88,16 +88,19 @@ def outcome(future: Future) -> Any:
 
 
 @contextlib.contextmanager
-def _interrupts_ignored() -> Iterator[None]:
-    """Start worker processes deaf to Ctrl-C, which reaches the whole process group."""
-    if threading.current_thread() is not threading.main_thread():
+def _interrupts_held() -> Iterator[None]:
+    """Start worker processes deaf to Ctrl-C, which reaches the whole process group.
+
+    It is held back, not dropped: this process gets it when the worker has started.
+    """
+    if not hasattr(signal, "pthread_sigmask"):
         yield
         return
-    before = signal.signal(signal.SIGINT, signal.SIG_IGN)
+    before = signal.pthread_sigmask(signal.SIG_BLOCK, {signal.SIGINT})
     try:
         yield
     finally:
-        signal.signal(signal.SIGINT, before)
+        signal.pthread_sigmask(signal.SIG_SETMASK, before)
 
 
 def _begin_worker(parent: int) -> None:
